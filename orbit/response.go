@@ -1,0 +1,13 @@
+package orbit
+
+// Response is how a body answers a forcing at frequency w, rad/s: the seam
+// between orbits and interiors.
+//
+//	K(ω) = −Im k₂(ω), dimensionless, odd in ω, positive for ω > 0, K(0) = 0.
+//
+// KDerivs also returns dK/dω, s, and writes the derivatives to the body's own
+// state variables into dx, which has one place for each of them.
+type Response interface {
+	K(w float64) float64
+	KDerivs(w float64, dx []float64) (k, dw float64)
+}
