@@ -1,0 +1,54 @@
+package thermal
+
+import (
+	"math"
+
+	"tidekiln/scenarios/key"
+)
+
+var andradeLaw = &key.Law{
+	Name:    "andrade",
+	Meaning: "transient creep t^α on top of a Maxwell body",
+	Source:  "Andrade 1910, Proc. R. Soc. A 84, 1; Efroimsky 2012, ApJ 746, 150",
+	Keys: rigidityKeys(
+		key.Key{Name: "alpha", Kind: key.Number, Default: 0.3, Range: key.Inside(0, 1),
+			Meaning: "exponent of the transient creep",
+			Source:  "0.2–0.4 for olivine and ice, Efroimsky 2012, ApJ 746, 150"},
+		key.Key{Name: "zeta", Kind: key.Number, Default: 1.0, Range: key.Positive(),
+			Meaning: "ratio of the Andrade time to the Maxwell time",
+			Source:  "about 1, Castillo-Rogez, Efroimsky & Lainey 2011, JGR 116, E09008"},
+	),
+}
+
+// andrade is
+//
+//	J* = (1/μ) [1 + Γ(1+α) (iωτζ)^{−α}] − i/(ηω), τ = η/μ
+//
+// with 0 < α < 1, ζ > 0 (Efroimsky 2012, ApJ 746, 150).
+type andrade struct {
+	alpha, lnZeta float64
+	phase         complex128 // Γ(1+α) i^{−α}
+}
+
+func newAndrade(v key.Values) Rheology {
+	alpha := v.Float("alpha")
+	sin, cos := math.Sincos(alpha * math.Pi / 2)
+	g := math.Gamma(1 + alpha)
+	return andrade{alpha, math.Log(v.Float("zeta")), complex(g*cos, -g*sin)}
+}
+
+// Compliance implements [Rheology].
+func (a andrade) Compliance(w, mu, eta float64) (j, dw, dmu, deta complex128) {
+	stiff := 1 / mu
+	flow := 1 / (eta * w)
+	// Real logarithm and exponential: a complex power would cost as much as
+	// everything else in a response.
+	creep := stiff * math.Exp(-a.alpha*(math.Log(w*eta*stiff)+a.lnZeta))
+	re, im := creep*real(a.phase), creep*imag(a.phase)
+	j = complex(stiff+re, im-flow)
+	slope := complex(-a.alpha*re, -a.alpha*im+flow) // to ln ω, and to ln η
+	dw = complex(real(slope)/w, imag(slope)/w)
+	deta = complex(real(slope)/eta, imag(slope)/eta)
+	dmu = complex(-stiff*(stiff+(1-a.alpha)*re), -stiff*(1-a.alpha)*im)
+	return j, dw, dmu, deta
+}
