@@ -39,16 +39,13 @@ func newAndrade(v key.Values) Rheology {
 
 // Compliance implements [Rheology].
 func (a andrade) Compliance(w, mu, eta float64) (j, dw, dmu, deta complex128) {
-	stiff := 1 / mu
-	flow := 1 / (eta * w)
+	stiff, perW, perEta := 1/mu, 1/w, 1/eta
+	flow := perEta * perW
 	// Real logarithm and exponential: a complex power would cost as much as
 	// everything else in a response.
 	creep := stiff * math.Exp(-a.alpha*(math.Log(w*eta*stiff)+a.lnZeta))
 	re, im := creep*real(a.phase), creep*imag(a.phase)
-	j = complex(stiff+re, im-flow)
-	slope := complex(-a.alpha*re, -a.alpha*im+flow) // to ln ω, and to ln η
-	dw = complex(real(slope)/w, imag(slope)/w)
-	deta = complex(real(slope)/eta, imag(slope)/eta)
+	byRe, byIm := -a.alpha*re, flow-a.alpha*im // to ln ω, and to ln η
 	dmu = complex(-stiff*(stiff+(1-a.alpha)*re), -stiff*(1-a.alpha)*im)
-	return j, dw, dmu, deta
+	return complex(stiff+re, im-flow), complex(byRe*perW, byIm*perW), dmu, complex(byRe*perEta, byIm*perEta)
 }

@@ -13,15 +13,16 @@ type layer struct {
 	expansivity  float64 // 1/K
 }
 
-// convection is the heat flux that convection carries out of a layer,
+// convection is the heat flux that convection carries out of a layer, as
 //
 //	ln q, q in W/m²,
 //
-// as a function of the logarithms of the temperature drop to the surface, K,
-// of the rheological temperature scale, K, and of the viscosity, Pa s. It also
-// returns the derivatives to the three.
+// a function of the temperature drop to the surface, K, of the rheological
+// temperature scale, K, and of ln η, η in Pa s, with its derivatives to the
+// three. A negative drop, which no body reaches that its surface cools, counts
+// as its size.
 type convection interface {
-	logFlux(lnDrop, lnScale, lnViscosity float64) (ln, dDrop, dScale, dViscosity float64)
+	logFlux(drop, scale, lnViscosity float64) (ln, dDrop, dScale, dViscosity float64)
 }
 
 var convections = registry[func(layer) convection]{
@@ -43,7 +44,7 @@ func newPowerLaw(l layer, coefficient, theta, rayleigh float64) powerLaw {
 	depth := l.depth * l.depth * l.depth
 	drop := 1 - theta + rayleigh
 	if math.Abs(drop) < 1e-12 {
-		drop = 0 // 1 − 4/3 + 1/3: what rounding leaves must not meet ln 0
+		drop = 0 // 1 − 4/3 + 1/3 up to rounding
 	}
 	return powerLaw{
 		constant: math.Log(coefficient*l.conductivity/l.depth) +
@@ -54,10 +55,15 @@ func newPowerLaw(l layer, coefficient, theta, rayleigh float64) powerLaw {
 	}
 }
 
-func (p powerLaw) logFlux(lnDrop, lnScale, lnViscosity float64) (ln, dDrop, dScale, dViscosity float64) {
-	ln = p.constant + p.scale*lnScale + p.viscosity*lnViscosity
-	if p.drop != 0 {
-		ln += p.drop * lnDrop
+func (p powerLaw) logFlux(drop, scale, lnViscosity float64) (ln, dDrop, dScale, dViscosity float64) {
+	ln = p.constant + p.viscosity*lnViscosity
+	if p.scale != 0 {
+		ln += p.scale * math.Log(scale)
+		dScale = p.scale / scale
 	}
-	return ln, p.drop, p.scale, p.viscosity
+	if p.drop != 0 {
+		ln += p.drop * math.Log(math.Abs(drop))
+		dDrop = p.drop / drop
+	}
+	return ln, dDrop, dScale, p.viscosity
 }

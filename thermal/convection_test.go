@@ -11,11 +11,11 @@ var example = layer{density: 3300, gravity: 1.8, depth: 1e6, conductivity: 4, di
 
 func fluxOf(t testing.TB, law string, keys map[string]any, drop, scale, eta float64) float64 {
 	t.Helper()
-	make, err := convections.build("law of convection", valuesOf(t, Convections, table{law, keys}))
+	lid, err := convections.build("law of convection", valuesOf(t, Convections, table{law, keys}))
 	if err != nil {
 		t.Fatal(err)
 	}
-	ln, _, _, _ := make(example).logFlux(math.Log(drop), math.Log(scale), math.Log(eta))
+	ln, _, _, _ := lid(example).logFlux(drop, scale, math.Log(eta))
 	return math.Exp(ln)
 }
 

@@ -75,13 +75,11 @@ func checkRock(v key.Values) []key.Problem {
 // out of a uniformly heated conducting sphere whose mean temperature is T, and
 // q_m of the melt. Density is the mean one everywhere.
 type rock struct {
-	mass, area float64
-	radiogenic float64 // W/kg
-	surface    float64 // K
-	start      float64 // J/kg
-
-	conductance, lnConductance float64 // 5k/R, W/m²/K
-
+	mass, area  float64
+	radiogenic  float64 // W/kg
+	surface     float64 // K
+	start       float64 // J/kg
+	conductance float64 // 5k/R, W/m²/K
 	enthalpy
 	layer
 	sphere
@@ -129,7 +127,6 @@ func newRock(v key.Values) func(Body) (Interior, error) {
 			viscosityMelt: v.Table("viscosity").Float("melt_exponent"),
 		}
 		r.conductance = 5 * r.conductivity / r.depth
-		r.lnConductance = math.Log(r.conductance)
 		var err error
 		if r.rheology, err = NewRheology(v.Table("rheology")); err != nil {
 			return nil, err

@@ -1,5 +1,7 @@
 package thermal
 
+import "math"
+
 // The kinks of rock, in the order of their numbers.
 const (
 	solidusKink = iota
@@ -11,8 +13,7 @@ const (
 // Freeze implements [Interior].
 func (r *rock) Freeze(_ float64, x []float64) {
 	r.phase = r.phaseOf(x[0])
-	r.Set(x)
-	r.convecting = r.now.onset > 0
+	r.convecting = r.onset(x[0]) > 0
 	r.Set(x)
 }
 
@@ -25,8 +26,8 @@ func (r *rock) KinkName(i int) string {
 }
 
 // Kink implements [Interior]: the enthalpy above the solidus or the liquidus
-// over that of the solidus, or the logarithm of the convective flux over the
-// conductive one, on the frozen phase. Exactly on a kink it has the sign of the
+// over that of the solidus, or the difference of convective and conductive flux
+// over their sum, on the frozen phase. Exactly on a kink it has the sign of the
 // frozen side, so that a start there is not mistaken for the far side.
 func (r *rock) Kink(i int, _ float64, x []float64) float64 {
 	switch i {
@@ -35,9 +36,20 @@ func (r *rock) Kink(i int, _ float64, x []float64) float64 {
 	case liquidusKink:
 		return sided(r.above(x[0], r.liquidus), r.phase == molten)
 	}
+	return sided(r.onset(x[0]), r.convecting)
+}
+
+// coincident is the difference, K, below which a body is as warm as its
+// surface: it keeps the ratio of two vanishing fluxes finite.
+const coincident = 1e-9
+
+// onset compares the convective flux q at h with the conductive one c on the
+// frozen phase, as (q − c)/(q + c).
+func (r *rock) onset(h float64) float64 {
 	var s rockState
-	r.evaluate(x[0], r.phase, r.convecting, &s)
-	return sided(s.onset, r.convecting)
+	r.evaluate(h, r.phase, true, &s)
+	c := r.conductance * max(math.Abs(s.T-r.surface), coincident)
+	return (s.q - c) / (s.q + c)
 }
 
 // above is h over the enthalpy of temperature T, relative to the solidus.

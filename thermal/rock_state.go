@@ -12,7 +12,6 @@ type rockState struct {
 	mu, dMu   float64 // Pa
 	q, dq     float64 // W/m², through the lid
 	qm, dqm   float64 // W/m², by melt
-	onset     float64 // ln of convective over conductive flux
 }
 
 // stiffest bounds ln η (η in Pa s). A body that stiff is elastic and does not
@@ -21,10 +20,6 @@ const stiffest = 600
 
 // slowest is ωτ, τ = η/μ, at which the limit ω → 0 is taken.
 const slowest = 1e-30
-
-// coincident is the difference, K, below which a body is as warm as its
-// surface: logarithms stay finite, and what it conducts is nothing.
-const coincident = 1e-9
 
 // evaluate computes the state of enthalpy h on the phase p, convecting or
 // conducting.
@@ -46,16 +41,12 @@ func (r *rock) evaluate(h float64, p phase, convecting bool, s *rockState) {
 	s.dMu = -r.rigidityMelt * s.df * s.mu
 
 	drop := s.T - r.surface
-	lnDrop := math.Log(max(math.Abs(drop), coincident))
-	lnQ, dDrop, dScale, dViscosity := r.convection.logFlux(lnDrop, -math.Log(-slope), lnEta)
-	s.onset = lnQ - r.lnConductance - lnDrop
 	if convecting {
+		// The scale is −1/slope, so it grows by curvature/slope² per kelvin.
+		scale := -1 / slope
+		lnQ, dDrop, dScale, dViscosity := r.convection.logFlux(drop, scale, lnEta)
 		s.q = math.Exp(lnQ)
-		perT := -dScale * curvature / slope // the scale is −1/slope
-		if dDrop != 0 {
-			perT += dDrop / drop
-		}
-		s.dq = s.q * (perT*s.dT + dViscosity*dLnEta)
+		s.dq = s.q * ((dDrop+dScale*curvature*scale*scale)*s.dT + dViscosity*dLnEta)
 	} else {
 		s.q, s.dq = r.conductance*drop, r.conductance*s.dT
 	}
