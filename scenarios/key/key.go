@@ -20,7 +20,13 @@ const (
 	Choice               // one of Key.Choices
 	Bool                 // true or false
 	Table                // a table that names a law of Key.Family
+	Special              // a list or a choice of forms that the reader knows by itself; not for laws
 )
+
+// String names the kind as the reference of keys shows it.
+func (k Kind) String() string {
+	return [...]string{"quantity", "number", "integer", "text", "choice", "boolean", "table", "special"}[k]
+}
 
 // Key declares one key of a table.
 type Key struct {
@@ -39,7 +45,8 @@ type Key struct {
 	Choices []string
 	Family  *Family
 	// Fixed marks a start value or a part of the system's structure: a change
-	// during the history may not set it.
+	// during the history may not set it. A fixed Table keeps its law, while each
+	// key inside decides for itself.
 	Fixed   bool
 	Meaning string
 	Source  string // where the default or the definition comes from
@@ -64,7 +71,9 @@ type Law struct {
 }
 
 // Family is a set of laws of which a table names one through its selector
-// key: { law = "arrhenius", … } or { model = "andrade", … }.
+// key: { law = "arrhenius", … } or { model = "andrade", … }. A family with an
+// empty Selector has one law, its table names none, and Values.Law is that
+// law's name.
 type Family struct {
 	Name     string // "viscosity law", for messages
 	Selector string // "law" or "model"

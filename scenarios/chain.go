@@ -1,0 +1,134 @@
+package scenarios
+
+import (
+	"fmt"
+	"regexp"
+	"strconv"
+
+	"tidekiln/scenarios/key"
+)
+
+var chainKeys = []key.Key{
+	{Name: "members", Kind: key.Special, Fixed: true,
+		Meaning: `two to ten neighbouring orbiters, innermost first: ["NAME", "NAME"]`},
+	{Name: "ratios", Kind: key.Special, Fixed: true,
+		Meaning: `first-order resonance of each pair of neighbours, one fewer than members: ["2:1", "3:2"]`},
+	{Name: "offset", Kind: key.Quantity, Unit: "deg/day", Fixed: true,
+		Meaning: "(j+1) n_outer − j n_inner, common to the chain, not 0; it fixes the outer orbits and the forced eccentricities"},
+}
+
+var chainLater = []string{"state", "libration"}
+
+// longestChain bounds the members: a chain of N has 2^(N−2) candidate centres.
+const longestChain = 10
+
+func (r *reader) chains(n *node, top *scope) []Chain {
+	var all []Chain
+	for _, name := range n.names {
+		at, child := path{"chain", name}, n.table[name]
+		if child.form != tableForm {
+			r.report(at, "is "+child.form.String()+", not a chain", "each chain is a table of its own: [chain.NAME]")
+			continue
+		}
+		r.bodyName(name, at)
+		v, _ := r.values(child, &scope{at: at, keys: chainKeys, later: chainLater, outer: top})
+		c := Chain{Name: name}
+		c.Offset, _ = v.Map["offset"].(float64)
+		if v.Map["offset"] != nil && c.Offset == 0 {
+			r.report(at.with("offset"), "is 0", "at exact commensurability the forced eccentricities diverge; give a negative offset, such as \"-0.5 deg/day\"")
+		}
+		if members, ok := v.Map["members"].(*node); ok {
+			c.Members = r.members(members, at.with("members"))
+		}
+		if ratios, ok := v.Map["ratios"].(*node); ok {
+			c.Ratios = r.ratios(ratios, at.with("ratios"))
+			if members := child.table["members"]; members != nil && members.form == listForm && ratios.form == listForm && len(members.items) >= 2 && len(ratios.items) != len(members.items)-1 {
+				r.report(at.with("ratios"), fmt.Sprintf("gives %d ratios for %d members", len(ratios.items), len(members.items)),
+					fmt.Sprintf("give %d, one for each pair of neighbours", len(members.items)-1))
+			}
+		}
+		all = append(all, c)
+	}
+	return all
+}
+
+func (r *reader) members(n *node, at path) []string {
+	if n.form != listForm {
+		r.report(at, "is "+n.form.String()+", not a list of orbiters", `write members = ["INNER", "OUTER"]`)
+		return nil
+	}
+	if len(n.items) < 2 || len(n.items) > longestChain {
+		r.report(at, fmt.Sprintf("names %d members", len(n.items)), fmt.Sprintf("a chain has 2 to %d", longestChain))
+		return nil
+	}
+	var members []string
+	for i, item := range n.items {
+		switch {
+		case item.form != textForm:
+			r.report(at.item(i), "is "+item.form.String()+", not the name of an orbiter", "")
+		case contains(members, item.text):
+			r.report(at.item(i), item.text+" is named twice", "")
+		default:
+			r.orbiterNamed(item.text, at.item(i))
+			members = append(members, item.text)
+		}
+	}
+	return members
+}
+
+var ratioPattern = regexp.MustCompile(`^\s*([0-9]{1,4})\s*:\s*([0-9]{1,4})\s*$`)
+
+func (r *reader) ratios(n *node, at path) []int {
+	if n.form != listForm {
+		r.report(at, "is "+n.form.String()+", not a list of ratios", `write ratios = ["2:1"]`)
+		return nil
+	}
+	var all []int
+	for i, item := range n.items {
+		if j, what, hint := ratioOf(item); what != "" {
+			r.report(at.item(i), what, hint)
+		} else {
+			all = append(all, j)
+		}
+	}
+	return all
+}
+
+// highestRatio bounds j of (j+1):j: neighbours nearer than 30:29 overlap with
+// the next resonance at any mass a moon has (Wisdom 1980, AJ 85, 1122).
+const highestRatio = 29
+
+// ratioOf returns j of "(j+1):j", or what is wrong with it.
+func ratioOf(n *node) (j int, what, hint string) {
+	m := ratioPattern.FindStringSubmatch(n.text)
+	if n.form != textForm || m == nil {
+		return 0, n.form.String() + " " + quote(n.text) + " is not a ratio", `write "2:1", the inner orbit's revolutions first`
+	}
+	p, _ := strconv.Atoi(m[1])
+	q, _ := strconv.Atoi(m[2])
+	a, b := p, q
+	for b != 0 {
+		a, b = b, a%b
+	}
+	switch {
+	case q == 0 || p == 0 || p == q:
+		return 0, quote(n.text) + " is not a resonance", `write "2:1", the inner orbit's revolutions first`
+	case p-q == 1 && q <= highestRatio:
+		return q, "", ""
+	case q-p == 1:
+		return 0, quote(n.text) + " has the outer orbit first", fmt.Sprintf(`write "%d:%d", the inner orbit's revolutions first`, q, p)
+	case p-q == 1:
+		return 0, quote(n.text) + " is too close a resonance", fmt.Sprintf("resonances beyond %d:%d overlap", highestRatio+1, highestRatio)
+	case p/a-q/a == 1:
+		return 0, quote(n.text) + " is not in lowest terms", fmt.Sprintf(`did you mean "%d:%d"?`, p/a, q/a)
+	}
+	return 0, quote(n.text) + " is not first order", "only (j+1):j resonances can lock a chain: 2:1, 3:2, 4:3, …"
+}
+
+func (c Chain) declared() key.Values {
+	return key.Values{Map: map[string]any{
+		"members": literal(joined(c.Members, quoteTOML)),
+		"ratios":  literal(joined(c.Ratios, func(j int) string { return quoteTOML(fmt.Sprintf("%d:%d", j+1, j)) })),
+		"offset":  c.Offset,
+	}}
+}
