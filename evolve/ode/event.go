@@ -1,0 +1,111 @@
+package ode
+
+import "slices"
+
+// Event is a function of the state whose changes of sign are wanted.
+type Event struct {
+	Name      string
+	Value     func(t float64, y []float64) float64 // must not modify y
+	Direction int                                  // +1 rising, −1 falling, 0 both
+}
+
+// Occurrence is one change of sign.
+type Occurrence struct {
+	Event  int     // index in the list
+	T      float64 // to the rounding of t
+	Rising bool
+	Y      []float64 // the state there, a copy
+}
+
+// Events finds occurrences in the segments of one integration.
+type Events struct {
+	list  []Event
+	side  []int8    // last sign other than 0
+	last  []float64 // value at the last point seen
+	y     []float64
+	found []Occurrence
+}
+
+// NewEvents prepares the search for a list of events; Reset must follow.
+func NewEvents(list []Event) *Events {
+	return &Events{list: slices.Clone(list), side: make([]int8, len(list)), last: make([]float64, len(list))}
+}
+
+// Reset forgets the past and takes (t, y) as the start; an event whose value is 0
+// there does not occur by leaving 0.
+func (e *Events) Reset(t float64, y []float64) {
+	if len(e.y) != len(y) {
+		e.y = make([]float64, len(y))
+	}
+	for i, ev := range e.list {
+		e.last[i] = ev.Value(t, y)
+		e.side[i] = sign(e.last[i])
+	}
+}
+
+// Locate returns the occurrences in a segment, which must follow that of the last
+// call or start at the state of Reset, in order of time. Changes of sign are seen
+// at the stages of the step (3 or 5) and located on the collocation polynomial;
+// a value that only touches 0 is no occurrence. The slice is valid until the next
+// call.
+func (e *Events) Locate(seg *Segment) []Occurrence {
+	e.found = e.found[:0]
+	before := 0.0
+	for j := range seg.tab.s {
+		theta, t := seg.tab.c[j], seg.T0+seg.tab.c[j]*seg.h
+		if j == seg.tab.s-1 {
+			t = seg.T1
+			copy(e.y, seg.y1)
+		} else {
+			seg.atStage(j, e.y)
+		}
+		for i, ev := range e.list {
+			v := ev.Value(t, e.y)
+			to := sign(v)
+			if to == 0 {
+				e.last[i] = v
+				continue
+			}
+			if e.side[i] == -to && ev.Direction != -int(to) {
+				e.add(seg, i, before, theta, e.last[i], v)
+				// The point is needed again by the events that follow.
+				if j == seg.tab.s-1 {
+					copy(e.y, seg.y1)
+				} else {
+					seg.atStage(j, e.y)
+				}
+			}
+			e.side[i], e.last[i] = to, v
+		}
+		before = theta
+	}
+	slices.SortStableFunc(e.found, func(a, b Occurrence) int {
+		switch {
+		case a.T < b.T:
+			return -1
+		case a.T > b.T:
+			return 1
+		}
+		return 0
+	})
+	return e.found
+}
+
+// add locates event i between two points of the segment.
+func (e *Events) add(seg *Segment, i int, a, b, fa, fb float64) {
+	value := e.list[i].Value
+	at := root(func(theta float64) float64 {
+		switch theta {
+		case 0:
+			return fa
+		case 1:
+			return fb
+		}
+		seg.at(theta, e.y)
+		return value(seg.T0+theta*seg.h, e.y)
+	}, a, b, fa, fb)
+	t := min(seg.T0+at*seg.h, seg.T1)
+	y := make([]float64, seg.n)
+	seg.Eval(t, y)
+	e.found = append(e.found, Occurrence{Event: i, T: t, Rising: fb > 0, Y: y})
+}

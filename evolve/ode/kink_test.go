@@ -1,0 +1,211 @@
+package ode
+
+import (
+	"math"
+	"strings"
+	"testing"
+)
+
+// ramp is y' = 1 + b max(0, y − 1), from y(0) = 0: y = t up to t = 1 and
+// 1 + (exp(b(t−1)) − 1)/b from there.
+type ramp struct {
+	b      float64
+	beyond bool
+}
+
+func (*ramp) Dim() int { return 1 }
+func (p *ramp) Derivs(t float64, y, dy []float64) {
+	dy[0] = 1
+	if p.beyond {
+		dy[0] += p.b * (y[0] - 1)
+	}
+}
+func (p *ramp) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	j[0] = 0
+	if p.beyond {
+		j[0] = p.b
+	}
+}
+func (p *ramp) Freeze(t float64, y []float64)              { p.beyond = y[0] > 1 }
+func (p *ramp) Kinks() int                                 { return 1 }
+func (p *ramp) Kink(i int, t float64, y []float64) float64 { return y[0] - 1 }
+func (p *ramp) Cross(i int, up bool)                       { p.beyond = up }
+func (p *ramp) exact(t float64) float64                    { return 1 + math.Expm1(p.b*(t-1))/p.b }
+
+// switching hides the kinks of a ramp: the branch follows the sign at every call.
+type switching struct{ *ramp }
+
+func (p switching) Dim() int { return 1 }
+func (p switching) Derivs(t float64, y, dy []float64) {
+	dy[0] = 1 + p.b*max(0, y[0]-1)
+}
+func (p switching) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	if j[0] = 0; y[0] > 1 {
+		j[0] = p.b
+	}
+}
+func (p switching) Kinks() int { return 0 }
+
+// Fixed steps keep order 2s − 1 across a located kink and fall to about 2, the
+// order of a step across a jump of f', without. The kink is met at t = 1 inside a
+// step for every h used.
+func TestOrderAcrossKink(t *testing.T) {
+	worst := func(sys System, stages int, h float64) float64 {
+		r := mustRadau(t, sys, Options{RTol: 1e-13, ATol: same(1, 1e-13), Stages: stages, FixedStep: h}, 0, []float64{0})
+		run(t, r, 2.5, nil)
+		return math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1)
+	}
+	for _, c := range []struct {
+		stages int
+		h      float64
+	}{{3, 0.3}, {5, 0.6}} {
+		coarse, fine := worst(&ramp{b: 2}, c.stages, c.h), worst(&ramp{b: 2}, c.stages, c.h/2)
+		if slope, want := math.Log2(coarse/fine), float64(2*c.stages-1); slope < want-0.7 {
+			t.Errorf("%d stages: order %.2f across the kink, want %g (errors %g, %g)", c.stages, slope, want, coarse, fine)
+		}
+		if without := worst(switching{&ramp{b: 2}}, c.stages, c.h/2); without < 100*fine {
+			t.Errorf("%d stages: error %g without and %g with location: no gain", c.stages, without, fine)
+		}
+	}
+}
+
+func TestKinkTimeAndSegment(t *testing.T) {
+	r := mustRadau(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 0, []float64{0})
+	crossed := -1.0
+	run(t, r, 2.5, func(seg *Segment) {
+		if seg.KinkCrossed() == 0 {
+			crossed = seg.T1
+		}
+	})
+	// y = t is integrated exactly and the step landed to 1e-12 of its length.
+	if math.Abs(crossed-1) > 1e-11 {
+		t.Errorf("kink at t = %.15g, want 1", crossed)
+	}
+	if n := r.Stats().KinksCrossed; n != 1 {
+		t.Errorf("%d kinks crossed, want 1", n)
+	}
+	if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
+		t.Errorf("end off by %g", d)
+	}
+}
+
+// A start on the kink takes the branch the path enters, whatever was frozen.
+func TestStartOnKink(t *testing.T) {
+	r := mustRadau(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 1, []float64{1})
+	run(t, r, 2.5, nil)
+	if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
+		t.Errorf("end off by %g", d)
+	}
+}
+
+// tide is y' = cos t with f” kinked where y = level: y' = cos t + c (y − level)₊²…
+// kept solvable by making the branch act on a second component, z' = ± 1:
+// z counts the time above the level less that below.
+type tide struct {
+	levels []float64
+	above  []bool
+}
+
+func (*tide) Dim() int { return 2 }
+func (p *tide) Derivs(t float64, y, dy []float64) {
+	dy[0], dy[1] = math.Cos(t), 0
+	for _, a := range p.above {
+		if a {
+			dy[1]++
+		} else {
+			dy[1]--
+		}
+	}
+}
+func (p *tide) Jacobian(t float64, y, dy, j []float64) { p.Derivs(t, y, dy); clear(j) }
+func (p *tide) Freeze(t float64, y []float64) {
+	p.above = make([]bool, len(p.levels))
+	for i, l := range p.levels {
+		p.above[i] = y[0] > l
+	}
+}
+func (p *tide) Kinks() int                                 { return len(p.levels) }
+func (p *tide) Kink(i int, t float64, y []float64) float64 { return y[0] - p.levels[i] }
+func (p *tide) Cross(i int, up bool)                       { p.above[i] = up }
+
+// Several kinks, two of them at one place, crossed up and down five times: the
+// times above each level are exact to the landing (1e-12 of a step) and the error
+// of y, over the slope √(1 − level²) of the crossing.
+func TestManyCrossings(t *testing.T) {
+	sys := &tide{levels: []float64{0.5, -0.3, 0.5, 0.9}}
+	r := mustRadau(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10)}, 0, []float64{0, 0})
+	end := 10 * math.Pi
+	run(t, r, end, nil)
+	want := 0.0
+	for _, l := range sys.levels {
+		above := 5 * (math.Pi - 2*math.Asin(l)) // of five periods
+		want += above - (end - above)
+	}
+	if d := math.Abs(r.State()[1] - want); d > 1e-8 {
+		t.Errorf("time above less below off by %g", d)
+	}
+	if n := r.Stats().KinksCrossed; n != 40 {
+		t.Errorf("%d kinks crossed, want 40", n)
+	}
+}
+
+// grazing touches its level from below: no lasting branch change, no stall.
+func TestGrazingKink(t *testing.T) {
+	sys := &tide{levels: []float64{1}}
+	r := mustRadau(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10), MaxSteps: 2000}, 0, []float64{0, 0})
+	run(t, r, 20, nil)
+	// Time above 1 is at most that of an error of y of some tolerances.
+	if d := math.Abs(r.State()[1] + 20); d > 10*math.Sqrt(1e-9) {
+		t.Errorf("time above less below off by %g", d)
+	}
+}
+
+// valve is y' = ∓ rate away from y = 0 (sliding) or −y with kinks at 0 that do not
+// matter (settling).
+type valve struct {
+	jump  float64
+	above bool
+}
+
+func (*valve) Dim() int { return 1 }
+func (p *valve) Derivs(t float64, y, dy []float64) {
+	if dy[0] = -y[0] + p.jump; p.above {
+		dy[0] = -y[0] - p.jump
+	}
+}
+func (p *valve) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	j[0] = -1
+}
+func (p *valve) Freeze(t float64, y []float64)              { p.above = y[0] > 0 }
+func (p *valve) Kinks() int                                 { return 1 }
+func (p *valve) Kink(i int, t float64, y []float64) float64 { return y[0] }
+func (p *valve) Cross(i int, up bool)                       { p.above = up }
+
+// A jump that both sides lead back to has no solution to follow: an error, not an
+// endless chatter.
+func TestSlidingStops(t *testing.T) {
+	r := mustRadau(t, &valve{jump: 1}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
+	var err error
+	for err == nil && r.T() < 5 {
+		_, err = r.Step(5)
+	}
+	if err == nil || !strings.Contains(err.Error(), "kink 0") {
+		t.Fatalf("error is %v, want one that names kink 0", err)
+	}
+	// 0.7 + (y + 1 = 1.7 e^{−t}): zero at t = ln 1.7.
+	if d := math.Abs(r.T() - math.Log(1.7)); d > 1e-7 {
+		t.Errorf("stopped at t = %g, off by %g", r.T(), d)
+	}
+}
+
+// An equilibrium on a kink is reached in spite of rounding across it.
+func TestSettlingOnKink(t *testing.T) {
+	r := mustRadau(t, &valve{}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
+	run(t, r, 1e6, nil)
+	if y := math.Abs(r.State()[0]); y > 1e-8 {
+		t.Errorf("y = %g, want 0", y)
+	}
+}

@@ -1,0 +1,127 @@
+package ode
+
+import (
+	"math"
+	"testing"
+)
+
+// growth is y' = y cos t with y = exp(sin t), and the integral of y' over the
+// path as a quadrature.
+type growth struct{}
+
+func (growth) Dim() int                               { return 1 }
+func (growth) Derivs(t float64, y, dy []float64)      { dy[0] = y[0] * math.Cos(t) }
+func (growth) Jacobian(t float64, y, dy, j []float64) { dy[0], j[0] = y[0]*math.Cos(t), math.Cos(t) }
+func (growth) NumQuadratures() int                    { return 1 }
+func (growth) Integrands(t float64, y, q []float64)   { q[0] = y[0] * math.Cos(t) }
+func (growth) exact(t float64, y []float64)           { y[0] = math.Exp(math.Sin(t)) }
+
+// kpr is the problem of Kværnø, Prothero and Robinson (from memory; the solution
+// holds by construction):
+//
+//	[u' v'] = A [(u² − 3 − cos ωt)/2u, (v² − 5 − cos t)/2v] − [ω sin ωt/2u, sin t/2v]
+//
+// with u = √(3 + cos ωt), v = √(5 + cos t).
+type kpr struct{ a, b, c, d, omega float64 }
+
+// stiff has eigenvalues near −1e4 and −1 of A.
+var stiffKPR = kpr{a: -1e4, b: 10, c: 1, d: -1, omega: 5}
+
+func (kpr) Dim() int { return 2 }
+func (p kpr) Derivs(t float64, y, dy []float64) {
+	u, v := y[0], y[1]
+	g, h := (u*u-3-math.Cos(p.omega*t))/(2*u), (v*v-5-math.Cos(t))/(2*v)
+	dy[0] = p.a*g + p.b*h - p.omega*math.Sin(p.omega*t)/(2*u)
+	dy[1] = p.c*g + p.d*h - math.Sin(t)/(2*v)
+}
+func (p kpr) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	u, v := y[0], y[1]
+	gu := 0.5 + (3+math.Cos(p.omega*t))/(2*u*u)
+	hv := 0.5 + (5+math.Cos(t))/(2*v*v)
+	j[0], j[1] = p.a*gu+p.omega*math.Sin(p.omega*t)/(2*u*u), p.b*hv
+	j[2], j[3] = p.c*gu, p.d*hv+math.Sin(t)/(2*v*v)
+}
+func (p kpr) exact(t float64, y []float64) {
+	y[0], y[1] = math.Sqrt(3+math.Cos(p.omega*t)), math.Sqrt(5+math.Cos(t))
+}
+
+// vanDerPol is y₁' = y₂, y₂' = ((1 − y₁²) y₂ − y₁)/ε.
+type vanDerPol struct{ eps float64 }
+
+func (vanDerPol) Dim() int { return 2 }
+func (p vanDerPol) Derivs(t float64, y, dy []float64) {
+	dy[0], dy[1] = y[1], ((1-y[0]*y[0])*y[1]-y[0])/p.eps
+}
+func (p vanDerPol) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	j[0], j[1] = 0, 1
+	j[2], j[3] = (-2*y[0]*y[1]-1)/p.eps, (1-y[0]*y[0])/p.eps
+}
+
+// robertson is the autocatalytic reaction of Robertson 1966.
+type robertson struct{}
+
+func (robertson) Dim() int { return 3 }
+func (robertson) Derivs(t float64, y, dy []float64) {
+	a, b, c := 0.04*y[0], 1e4*y[1]*y[2], 3e7*y[1]*y[1]
+	dy[0], dy[1], dy[2] = b-a, a-b-c, c
+}
+func (p robertson) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	copy(j, []float64{-0.04, 1e4 * y[2], 1e4 * y[1], 0.04, -1e4*y[2] - 6e7*y[1], -1e4 * y[1], 0, 6e7 * y[1], 0})
+}
+
+// relax is y' = −k (y − cos t), with y(0) = 1.
+type relax struct{ k float64 }
+
+func (relax) Dim() int                            { return 1 }
+func (p relax) Derivs(t float64, y, dy []float64) { dy[0] = -p.k * (y[0] - math.Cos(t)) }
+func (p relax) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	j[0] = -p.k
+}
+
+// same returns n tolerances.
+func same(n int, tol float64) []float64 {
+	v := make([]float64, n)
+	for i := range v {
+		v[i] = tol
+	}
+	return v
+}
+
+func mustRadau(t testing.TB, sys System, opt Options, t0 float64, y0 []float64) *Radau {
+	t.Helper()
+	r, err := NewRadau(sys, opt)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := r.Start(t0, y0); err != nil {
+		t.Fatal(err)
+	}
+	return r
+}
+
+// run steps to t1, calling each if not nil with every segment.
+func run(t testing.TB, r *Radau, t1 float64, each func(*Segment)) {
+	t.Helper()
+	for r.T() < t1 {
+		seg, err := r.Step(t1)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if each != nil {
+			each(seg)
+		}
+	}
+}
+
+// maxDiff returns the largest |a_i − b_i|/max(1, |b_i|).
+func maxDiff(a, b []float64) float64 {
+	m := 0.0
+	for i := range a {
+		m = max(m, math.Abs(a[i]-b[i])/max(1, math.Abs(b[i])))
+	}
+	return m
+}
