@@ -52,16 +52,14 @@ func (h *Harmonics) Synchronous(j int) (s, dx float64) {
 // once it has seen the panel of its eccentricity.
 func NewHarmonics() *Harmonics { return &Harmonics{} }
 
-// At fills h for x = e² and returns false if x is not in [−1e-6, 0.95²]. The
-// functions are analytic at x = 0, so the rounding of a vanishing eccentricity
-// to a slightly negative square is harmless.
+// At fills h for x = e² and returns false if x is not in [0, 0.95²].
 func (h *Harmonics) At(x float64) bool { return h.at(x, true) }
 
 // SynchronousAt fills only what Synchronous needs.
 func (h *Harmonics) SynchronousAt(x float64) bool { return h.at(x, false) }
 
 func (h *Harmonics) at(x float64, all bool) bool {
-	if !(x >= -1e-6 && x <= MaxEccentricity*MaxEccentricity) {
+	if !(x >= 0 && x <= MaxEccentricity*MaxEccentricity) {
 		return false
 	}
 	p := panelOf(x)
@@ -103,7 +101,7 @@ type panel struct {
 // orderAt returns the number of harmonics that matter at x. A harmonic's share
 // falls as x^{j−1}, so near a circular orbit two or three are enough.
 func (p *panel) orderAt(x float64) int {
-	ratio := (math.Abs(x) + 1e-12) / p.high
+	ratio := (x + 1e-12) / p.high
 	share := 1.0
 	for j := 2; j <= p.order; j++ {
 		share *= ratio

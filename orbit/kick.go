@@ -1,5 +1,7 @@
 package orbit
 
+import "math"
+
 // Kick is what a tide does to one orbiter of a [Group]. With Λ0 the reference
 // action, u = Λ/Λ0 and g = Γ/Λ0,
 //
@@ -93,7 +95,7 @@ func (c *Chain) PushDerivs(k int, t *Kick, y, jac []float64, stride, col int) {
 		{ix, t.PumpU * x, t.PumpG * x, t.Pump, x, t.PumpX},
 		{iv, t.PumpU * v, t.PumpG * v, t.Pump, v, t.PumpX},
 	} {
-		row := jac[r.row*stride : (r.row+1)*stride]
+		row := jac[r.row*stride:]
 		row[k] += r.u
 		row[ix] += r.g * x
 		row[iv] += r.g * v
@@ -184,4 +186,12 @@ func (t *terms) addQ(row []float64, r, n int, f float64) {
 	if t.angleIndex >= 0 {
 		row[t.angleIndex] -= f * t.imQ
 	}
+}
+
+// Shape returns the semi-major axis, m, and the eccentricity of member k,
+// without the rates that [Group.Elements] wants.
+func Shape(g Group, k int, y []float64) (a, e float64) {
+	l, gamma := g.Actions(k, y)
+	u := 1 + l
+	return g.member(k).a * u * u, math.Sqrt(eccentricitySquared(u, gamma))
 }

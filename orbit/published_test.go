@@ -87,7 +87,8 @@ func TestIoHeatFromAstrometry(t *testing.T) {
 	}
 	tide := NewSynchronousTide(o, 0, p, 1.8216e6, 0)
 	kick := NewKick(0)
-	tide.Kick(y[0], y[1], constantK(0.015), kick, false)
+	l, g := o.Actions(0, y)
+	tide.Kick(l, g, constantK(0.015), kick, false)
 	w := o.NewRates()
 	o.Flow(y, make([]float64, 2), w)
 	near(t, "heat", -o.Power(0, kick, y, w), 9.3375e13, 1e-3)

@@ -12,7 +12,7 @@ var rockLaw = &key.Law{
 	Meaning: "one convecting layer of rock that fills the body, warm enough to melt in part",
 	Source:  "Fischer & Spohn 1990, Icarus 83, 39; Moore 2003, JGR 108(E8), 5096",
 	Keys: []key.Key{
-		{Name: "temperature", Kind: key.Quantity, Unit: "K", Range: key.Positive(), Fixed: true,
+		{Name: "temperature", Kind: key.Quantity, Unit: "K", Range: key.Positive(),
 			Meaning: "temperature at the start"},
 		{Name: "surface_temperature", Kind: key.Quantity, Unit: "K", Range: key.AtLeast(0),
 			Meaning: "temperature of the surface"},
