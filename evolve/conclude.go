@@ -1,0 +1,88 @@
+package evolve
+
+// conclude judges every body and the orbits, and fills the tables that wait
+// for the end.
+func (r *run) conclude() {
+	h := r.h
+	lost := map[string]bool{}
+	for _, e := range h.Events {
+		if e.Ends && (e.Name == EventRocheLimit || e.Name == EventOrbitsCross) {
+			lost[e.Body] = true
+			if e.Other != "" {
+				lost[e.Other] = true
+			}
+		}
+	}
+	misfit, misfits := r.misfits()
+	h.Misfit = misfit
+	for i := range r.p.bodies {
+		b := &r.p.bodies[i]
+		o := r.track.bodies[i].judge(h.Begin, h.End, r.radiogenic(i))
+		o.runID, o.Body, o.Misfit = h.RunID, b.name, misfits[i]
+		switch {
+		case lost[b.name]:
+			o.Outcome = Disrupted
+		case h.Status == Stopped && b.states > 0:
+			o.Outcome = Failed
+		}
+		h.Bodies = append(h.Bodies, o)
+	}
+	h.Judged = h.Scenario.Run.Judge
+	for i := range r.p.bodies {
+		if h.Judged == "" && r.p.bodies[i].states > 0 {
+			h.Judged = r.p.bodies[i].name
+		}
+	}
+	for i := range h.Bodies {
+		if o := &h.Bodies[i]; o.Body == h.Judged || h.Outcome == "" && o.Outcome == Disrupted {
+			h.Outcome = o.Outcome
+		}
+	}
+	if h.Status == Stopped {
+		h.Outcome = Failed
+	}
+	h.OrbitOutcome = r.orbits(len(lost) > 0)
+}
+
+// radiogenic returns a body's present radiogenic heat, W.
+func (r *run) radiogenic(i int) float64 {
+	b := &r.p.bodies[i]
+	if b.states == 0 {
+		return 0
+	}
+	r.p.set(r.y)
+	return b.interior.Balance(r.p.age(r.t)).RadiogenicHeat
+}
+
+// orbits returns the outcome of the orbits.
+func (r *run) orbits(lost bool) string {
+	if lost {
+		return OrbitDisrupted
+	}
+	for _, e := range r.h.Events {
+		if e.Name == EventResonanceLeft {
+			return OrbitLeft
+		}
+	}
+	for i := range r.p.groups {
+		if r.p.groups[i].chain != nil {
+			return OrbitLocked
+		}
+	}
+	return OrbitFree
+}
+
+// reasonOf words the event that ended a history.
+func reasonOf(w *watched) string {
+	s := w.Name
+	if w.body != "" {
+		s += ": " + w.body
+	}
+	if w.other != "" {
+		s += " and " + w.other
+	}
+	if w.detail != "" {
+		s += ", " + w.detail
+	}
+	return s
+}

@@ -1,0 +1,42 @@
+package evolve
+
+import "math/big"
+
+// grid is the cadence of a history: the multiples of an exact number of Myr.
+type grid struct {
+	every *big.Rat // nil: no cadence
+	next  int64    // the multiple that comes next
+}
+
+// newGrid returns the cadence with the first multiple after begin, Myr.
+func newGrid(every *big.Rat, begin float64) *grid {
+	g := &grid{every: every}
+	if every == nil {
+		return g
+	}
+	step, _ := every.Float64()
+	g.next = max(0, int64(begin/step)-1)
+	for g.time() <= begin {
+		g.next++
+	}
+	return g
+}
+
+// time is the nearest double to the exact multiple that comes next, Myr.
+func (g *grid) time() float64 {
+	t, _ := new(big.Rat).Mul(g.every, new(big.Rat).SetInt64(g.next)).Float64()
+	return t
+}
+
+// on reports whether t, Myr, is a multiple.
+func (g *grid) on(t float64) bool {
+	if g.every == nil {
+		return false
+	}
+	q := new(big.Rat).SetFloat64(t)
+	q.Quo(q, g.every)
+	n, _ := q.Float64()
+	m := int64(n + 0.5)
+	exact, _ := new(big.Rat).Mul(g.every, new(big.Rat).SetInt64(m)).Float64()
+	return exact == t
+}
