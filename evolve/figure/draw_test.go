@@ -217,7 +217,7 @@ func TestHostileTextIsDrawn(t *testing.T) {
 }
 
 func TestOneToEightBodies(t *testing.T) {
-	for n := 1; n <= most; n++ {
+	for n := 1; n <= maxBodies; n++ {
 		for _, cm := range []float64{8.5, 16} {
 			if err := Draw(many(n), filepath.Join(t.TempDir(), "h.svg"), Options{WidthCM: cm}); err != nil {
 				t.Errorf("%d bodies at %g cm: %v", n, cm, err)

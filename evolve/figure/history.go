@@ -111,4 +111,12 @@ func (h History) listed() string {
 	return strings.Join(names, ", ")
 }
 
-func finite(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
+// largest and smallest bound the values that axes are made for: differences
+// and powers of ten of such numbers stay within float64.
+const (
+	largest  = 1e200
+	smallest = 1e-200
+)
+
+// finite says that v is a value: no NaN, no infinity, nothing near one.
+func finite(v float64) bool { return math.Abs(v) <= largest }

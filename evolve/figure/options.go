@@ -56,13 +56,13 @@ func choose(h History, names []string) ([]body, error) {
 			continue
 		}
 		slot := i
-		if len(h.Bodies) > most {
+		if len(h.Bodies) > maxBodies {
 			slot = len(chosen)
 		}
 		chosen = append(chosen, body{s, slot})
 	}
-	if len(chosen) > most {
-		return nil, fmt.Errorf("figure: %d bodies, at most %d can be told apart: name some in Options.Bodies", len(chosen), most)
+	if len(chosen) > maxBodies {
+		return nil, fmt.Errorf("figure: %d bodies, at most %d can be told apart: name some in Options.Bodies", len(chosen), maxBodies)
 	}
 	return chosen, nil
 }
@@ -96,9 +96,10 @@ func (o Options) window(bodies []body) (from, to float64, err error) {
 			return 0, 0, fmt.Errorf("figure: a logarithmic time axis needs two positive times: take a linear one")
 		}
 	}
-	if to <= from {
-		// A single time stands in the middle of a short axis.
-		half := math.Max(1e-3, 0.01*math.Abs(from))
+	if size := math.Max(math.Abs(from), math.Abs(to)); to-from <= math.Max(1e-12, 1e-9*size) {
+		// A single time, or times that labels could not tell apart, stand in the
+		// middle of a short axis.
+		half := math.Max(1e-3, 0.01*size)
 		if o.LogTime {
 			half = 0.01 * from
 		}

@@ -7,8 +7,8 @@ import (
 	"gonum.org/v1/plot/vg"
 )
 
-// most is how many bodies one picture tells apart.
-const most = len(palette)
+// maxBodies is how many bodies one picture tells apart.
+const maxBodies = len(palette)
 
 // palette holds the colours of Okabe and Ito (Color Universal Design, 2008),
 // darkest contrasts first; grey stands in for their yellow, which is too faint

@@ -12,7 +12,7 @@ import (
 // the history does not hold.
 //
 // Values are drawn as they are, with three exceptions. A logarithmic axis drops
-// zeros and lets a curve leave it that falls more than 6 decades (eccentricity)
+// zeros and negative values and lets a curve leave it that falls more than 6 decades (eccentricity)
 // or 12 (heat) below the panel's largest value. Long histories are thinned to
 // their extremes in each column of a pixel. Observations outside the window of
 // time, and marks of bodies not drawn, are left out.
@@ -67,7 +67,7 @@ func measuresFor(cm float64) measures {
 	return measures{
 		label: font, tick: font * 0.9, small: font * 0.78,
 		line: font * 0.11, frame: 0.6, marker: font * 0.25,
-		panel: vg.Length(math.Min(170, 24+4.8*cm)), gap: font * 0.85, margin: 4,
+		panel: vg.Length(math.Min(170, math.Max(66, 24+4.8*cm))), gap: font * 0.85, margin: 4,
 	}
 }
 

@@ -1,8 +1,6 @@
 package figure
 
-import (
-	"math"
-)
+import "math"
 
 // scale maps the values from lo to hi on 0 to 1, linearly or by logarithm.
 type scale struct {
@@ -38,14 +36,14 @@ func (s sheet) scaleFor(values []float64) (scale, bool) {
 			continue
 		}
 		lo, hi = math.Min(lo, v), math.Max(hi, v)
-		if v > 0 {
+		if v >= smallest {
 			least = math.Min(least, v)
 		}
 	}
 	if lo > hi {
 		return scale{}, false
 	}
-	if s.alwaysLog() && hi <= 0 {
+	if s.alwaysLog() && hi < smallest {
 		return scale{}, false
 	}
 	if s.alwaysLog() || hi > s.logFrom*least {
@@ -54,13 +52,13 @@ func (s sheet) scaleFor(values []float64) (scale, bool) {
 		ratio = math.Max(ratio, 1.03)
 		return scale{log: true, lo: least / ratio, hi: hi * ratio}, true
 	}
-	largest := math.Max(math.Abs(lo), math.Abs(hi))
-	if span := hi - lo; span < math.Max(s.least, 1e-4*largest) {
+	size := math.Max(math.Abs(lo), math.Abs(hi))
+	if span := hi - lo; span < math.Max(s.least, 1e-4*size) {
 		// Constant but for rounding: drawn as a flat line, not as noise.
-		if largest < s.least {
+		if size < s.least {
 			return scale{lo: -padding * s.flat, hi: s.flat}, true
 		}
-		half := 0.05 * largest
+		half := 0.05 * size
 		return scale{lo: lo - half, hi: hi + half}, true
 	}
 	pad := padding * (hi - lo)
