@@ -11,5 +11,5 @@
 // because the PDF fonts hold no more. Equal input gives equal bytes in every
 // format: no file carries a date.
 //
-// The package reads no files and computes no physics.
+// The package computes no physics.
 package figure
