@@ -37,8 +37,12 @@ func (r *reader) chains(n *node, top *scope) []Chain {
 		if v.Map["offset"] != nil && c.Offset == 0 {
 			r.report(at.with("offset"), "is 0", "at exact commensurability the forced eccentricities diverge; give a negative offset, such as \"-0.5 deg/day\"")
 		}
+		before := len(r.problems)
 		if members, ok := v.Map["members"].(*node); ok {
 			c.Members = r.members(members, at.with("members"))
+		}
+		if c.Members == nil || len(r.problems) > before {
+			r.listless = true
 		}
 		if ratios, ok := v.Map["ratios"].(*node); ok {
 			c.Ratios = r.ratios(ratios, at.with("ratios"))
@@ -58,7 +62,7 @@ func (r *reader) members(n *node, at path) []string {
 		return nil
 	}
 	if len(n.items) < 2 || len(n.items) > longestChain {
-		r.report(at, fmt.Sprintf("names %d members", len(n.items)), fmt.Sprintf("a chain has 2 to %d", longestChain))
+		r.report(at, fmt.Sprintf("has %d, not 2 to %d orbiters", len(n.items), longestChain), "an orbiter in no resonance is in no chain")
 		return nil
 	}
 	var members []string
@@ -99,10 +103,14 @@ func (r *reader) ratios(n *node, at path) []int {
 const highestRatio = 29
 
 // ratioOf returns j of "(j+1):j", or what is wrong with it.
-func ratioOf(n *node) (j int, what, hint string) {
+func ratioOf(n *node) (j int, what, try string) {
 	m := ratioPattern.FindStringSubmatch(n.text)
-	if n.form != textForm || m == nil {
-		return 0, n.form.String() + " " + quote(n.text) + " is not a ratio", `write "2:1", the inner orbit's revolutions first`
+	const hint = `write "2:1", the inner orbit's revolutions first`
+	if n.form != textForm {
+		return 0, "is " + n.form.String() + ", not a ratio", hint
+	}
+	if m == nil {
+		return 0, quote(n.text) + " is not a ratio", hint
 	}
 	p, _ := strconv.Atoi(m[1])
 	q, _ := strconv.Atoi(m[2])
@@ -112,7 +120,7 @@ func ratioOf(n *node) (j int, what, hint string) {
 	}
 	switch {
 	case q == 0 || p == 0 || p == q:
-		return 0, quote(n.text) + " is not a resonance", `write "2:1", the inner orbit's revolutions first`
+		return 0, quote(n.text) + " is not a resonance", hint
 	case p-q == 1 && q <= highestRatio:
 		return q, "", ""
 	case q-p == 1:

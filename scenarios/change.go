@@ -150,12 +150,12 @@ func (r *reader) set(base *node, s setting) {
 		}
 		return &p
 	}
-	const hint = "a change may set keys of central.tide and of interiors, start values and the choice of the model apart"
+	const hint = "a change may set keys of central.tide and of interiors, but not the model itself"
 	var p *Problem
 	switch {
 	case len(s.path) > 1 && s.path[0] == "orbiter" && base.table["orbiter"].child(s.path[1]) == nil:
 		p = fail("there is no orbiter "+quote(s.path[1]), choose(s.path[1], base.table["orbiter"].names))
-	case fixed(base, s.path, s.value):
+	case fixed(base, s.path):
 		p = fail("cannot be changed during the history", hint)
 	default:
 		p = put(r.root, s.path, s.value, s.value.place, fail)
@@ -165,9 +165,9 @@ func (r *reader) set(base *node, s setting) {
 	}
 }
 
-// fixed reports whether a path with its value would set a fixed key. Unknown
-// keys are not fixed: the reader reports them.
-func fixed(root *node, p path, value *node) bool {
+// fixed reports whether a path leads to a fixed key. Unknown keys are not
+// fixed: the reader reports them.
+func fixed(root *node, p path) bool {
 	var keys []key.Key
 	rest := p
 	switch {
@@ -182,18 +182,7 @@ func fixed(root *node, p path, value *node) bool {
 	for i, name := range rest {
 		k := keyNamed(keys, name)
 		if i == len(rest)-1 {
-			if k.Fixed || k.Kind != key.Table || value.form != tableForm {
-				return k.Fixed
-			}
-			for _, inside := range value.names {
-				// The law may change with the table, so ask all laws.
-				for _, l := range k.Family.Laws {
-					if keyNamed(l.Keys, inside).Fixed {
-						return true
-					}
-				}
-			}
-			return false
+			return k.Fixed
 		}
 		if k.Kind != key.Table {
 			return false
@@ -204,11 +193,11 @@ func fixed(root *node, p path, value *node) bool {
 		}
 		law := k.Family.Laws[0]
 		if k.Family.Selector != "" {
-			if s := n.child(k.Family.Selector); s == nil || k.Family.Find(s.text) == nil {
+			chosen := n.child(k.Family.Selector)
+			if chosen == nil || k.Family.Find(chosen.text) == nil {
 				return false
-			} else {
-				law = k.Family.Find(s.text)
 			}
+			law = k.Family.Find(chosen.text)
 		}
 		keys = lawKeys(k, law)
 	}

@@ -53,14 +53,14 @@ func (r *reader) structure(s *Scenario) {
 	}
 	for _, o := range s.Orbiters {
 		at := path{"orbiter", o.Name}
-		if _, locked := member[o.Name]; !locked && !r.hasOrbit(at) {
+		if _, locked := member[o.Name]; !locked && !r.hasOrbit(at) && !r.listless {
 			r.report(at.with("period"), "is missing", `add period = "NUMBER d" or semimajor_axis = "NUMBER km", or make it a member of a chain`)
 		}
 		if o.Eccentricity >= mostEccentric && withTide(s.Central, o) {
 			r.report(at.with("eccentricity"), fmt.Sprintf("%g is too high for tides", o.Eccentricity), fmt.Sprintf("it must be below %g where a tide acts", mostEccentric))
 		}
 		if o.Mass > 0 && s.Central.Mass > 0 && o.Mass >= s.Central.Mass {
-			r.report(at.with("mass"), fmt.Sprintf("%g kg is not below that of the central body, %g kg", o.Mass, s.Central.Mass), "check both masses")
+			r.report(at.with("mass"), fmt.Sprintf("%s kg is not below that of the central body, %s kg", formatNumber(o.Mass), formatNumber(s.Central.Mass)), "check both masses")
 		}
 	}
 	r.judged(s)

@@ -41,6 +41,7 @@ func (r *reader) observed(n *node, top *scope) []Observed {
 		}
 		if o.Column, _ = v.Map["column"].(string); v.Map["column"] != nil && !isBare(o.Column) {
 			r.report(at.with("column"), quote(o.Column)+" is not the name of a column", "names have letters, digits and _")
+			continue
 		}
 		o.Value = r.inColumn(v.Map["value"], at.with("value"), o.Column, key.Range{})
 		o.Error = r.inColumn(v.Map["error"], at.with("error"), o.Column, key.Positive())

@@ -62,11 +62,11 @@ func readQuantity(text, want string, local map[string]unit) (*big.Rat, float64, 
 		return nil, 0, p
 	}
 	if u.dim != target.dim {
-		hint := fmt.Sprintf("needs %v, such as %s", target.dim, want)
+		hint := "write it in " + want + " or another unit of that dimension"
 		if strings.Count(want, "/") > strings.Count(name, "/") && strings.Contains(name, "/") {
 			hint += `; "/" divides by the next factor only`
 		}
-		return nil, 0, &Problem{What: fmt.Sprintf("%s is %v", quote(text), u.dim), Hint: hint}
+		return nil, 0, &Problem{What: fmt.Sprintf("%s is %v, but %v is needed", quote(text), u.dim, target.dim), Hint: hint}
 	}
 	exact, si, ok := scaled(number, u.scale)
 	if !ok {

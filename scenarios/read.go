@@ -171,7 +171,11 @@ func Open(nameOrPath string, edits ...Edit) (*Scenario, error) {
 		return ReadFile(nameOrPath, edits...)
 	}
 	hint := "shipped are " + strings.Join(known, ", ")
-	if near := nearest(strings.TrimSuffix(filepath.Base(nameOrPath), ".toml"), append(known, tomlFiles(filepath.Dir(nameOrPath))...)); near != "" {
+	near := nearest(nameOrPath, tomlFiles(filepath.Dir(nameOrPath)))
+	if near == "" {
+		near = nearest(strings.TrimSuffix(nameOrPath, ".toml"), known)
+	}
+	if near != "" {
 		hint = "did you mean " + near + "?"
 	}
 	return nil, Errors{{File: nameOrPath, What: "there is no such file and no such shipped scenario", Hint: hint}}

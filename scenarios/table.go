@@ -14,6 +14,7 @@ type reader struct {
 	file     string
 	root     *node
 	local    map[string]unit // M_central and R_central, once they are known
+	listless bool            // a chain's members are in doubt, so nobody is known to be outside one
 	problems Errors
 }
 
@@ -65,9 +66,10 @@ func (r *reader) values(n *node, s *scope) (v key.Values, ok bool) {
 	before := len(r.problems)
 	v.Map = map[string]any{}
 	known := names(s.keys)
+	meant := map[string]bool{} // keys that an unknown one was likely to be
 	for _, name := range n.names {
 		if !contains(known, name) {
-			r.unknown(name, s)
+			meant[r.unknown(name, s)] = true
 		}
 	}
 	for _, k := range s.keys {
@@ -79,19 +81,20 @@ func (r *reader) values(n *node, s *scope) (v key.Values, ok bool) {
 			}
 		case k.Default != nil:
 			v.Map[k.Name] = k.Default
-		case !k.Optional:
+		case !k.Optional && !meant[k.Name]:
 			r.report(at, "is missing", "add "+sample(k)+": "+k.Meaning)
 		}
 	}
 	return v, len(r.problems) == before
 }
 
-// unknown reports a key that a table does not have, with what was likely meant.
-func (r *reader) unknown(name string, s *scope) {
+// unknown reports a key that a table does not have, and returns the one of its
+// keys that was likely meant, or "".
+func (r *reader) unknown(name string, s *scope) (near string) {
 	at := s.at.with(name)
 	if contains(s.later, name) {
 		r.report(at, "is not available in this version", "remove it")
-		return
+		return ""
 	}
 	hint := ""
 	for o := s.outer; o != nil && hint == ""; o = o.outer {
@@ -106,13 +109,14 @@ func (r *reader) unknown(name string, s *scope) {
 		hint = s.hint(name)
 	}
 	if hint == "" {
-		if near := nearest(name, names(s.keys)); near != "" {
+		if near = nearest(name, names(s.keys)); near != "" {
 			hint = "did you mean " + near + "?"
 		} else {
 			hint = "known here: " + strings.Join(names(s.keys), ", ")
 		}
 	}
 	r.report(at, "is not a known key", hint)
+	return near
 }
 
 // value reads one value, nil if it is wrong. A Special stays a node.
@@ -201,7 +205,11 @@ func (r *reader) integer(n *node, at path, k key.Key) any {
 		err = strconv.ErrSyntax
 	}
 	if err != nil {
-		r.report(at, "is not a whole number", "write "+sample(k)+", without quotes or unit")
+		what := n.text + " is not a whole number"
+		if n.form != integerForm && n.form != floatForm {
+			what = "is " + n.form.String() + ", not a whole number"
+		}
+		r.report(at, what, "write "+sample(k)+", without quotes or unit")
 		return nil
 	}
 	if !k.Range.Contains(float64(i)) {
@@ -336,6 +344,9 @@ func rangeText(k key.Key) string {
 	var parts []string
 	if !k.Range.Set {
 		return "finite"
+	}
+	if k.Range.Min == k.Range.Max {
+		return shown(k.Range.Min)
 	}
 	if !math.IsInf(k.Range.Min, -1) {
 		parts = append(parts, low+shown(k.Range.Min))
