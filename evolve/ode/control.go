@@ -47,7 +47,7 @@ func (r *Radau) propose(tEnd float64) (h float64, cut bool) {
 		r.control.h = min(r.control.h, r.opt.MaxStep)
 	}
 	switch h = r.control.h; {
-	case rest <= h:
+	case rest <= h || rest <= 4*r.resolution():
 		return rest, true
 	case rest < 2*h:
 		return rest / 2, true
@@ -80,6 +80,10 @@ func (r *Radau) firstStep(rest float64) float64 {
 	return max(h, r.opt.MinStep)
 }
 
+// resolution is the shortest step that t can tell, a few units in its last
+// place.
+func (r *Radau) resolution() float64 { return 4 * 0x1p-52 * math.Abs(r.t) }
+
 // shrink answers a failed attempt of length h with a shorter step, or says that
 // none is left to try.
 func (r *Radau) shrink(h, factor float64, stop StopError) error {
@@ -89,7 +93,7 @@ func (r *Radau) shrink(h, factor float64, stop StopError) error {
 	if c.h < r.opt.MinStep && h > r.opt.MinStep {
 		c.h = r.opt.MinStep
 	}
-	if c.h >= r.opt.MinStep && c.h > 4*0x1p-52*math.Abs(r.t) && c.fails <= maxFails && r.opt.FixedStep == 0 {
+	if c.h >= r.opt.MinStep && c.h > r.resolution() && c.fails <= maxFails && r.opt.FixedStep == 0 {
 		return nil
 	}
 	stop.T, stop.H = r.t, c.h

@@ -139,7 +139,7 @@ func (r *Radau) landOnKink(h, tEnd float64) (met crossing, again bool, err error
 		const d = 1e-3
 		g := value(1)
 		move := -d * g / (g - value(1-d))
-		if !(math.Abs(move) < 0.1) || math.Abs(move) <= 1e-12+4*0x1p-52*math.Abs(r.t)/target {
+		if !(math.Abs(move) < 0.1) || math.Abs(move) <= 1e-12+r.resolution()/target {
 			break
 		}
 		target *= 1 + move

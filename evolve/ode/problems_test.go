@@ -5,16 +5,26 @@ import (
 	"testing"
 )
 
-// growth is y' = y cos t with y = exp(sin t), and the integral of y' over the
-// path as a quadrature.
-type growth struct{}
+// spin is u′ = ρv, v′ = −ρu, ρ = u² + v²: u = cos t, v = −sin t from (1, 0). Its
+// quadrature is u′.
+type spin struct{}
 
-func (growth) Dim() int                               { return 1 }
-func (growth) Derivs(t float64, y, dy []float64)      { dy[0] = y[0] * math.Cos(t) }
-func (growth) Jacobian(t float64, y, dy, j []float64) { dy[0], j[0] = y[0]*math.Cos(t), math.Cos(t) }
-func (growth) NumQuadratures() int                    { return 1 }
-func (growth) Integrands(t float64, y, q []float64)   { q[0] = y[0] * math.Cos(t) }
-func (growth) exact(t float64, y []float64)           { y[0] = math.Exp(math.Sin(t)) }
+func (spin) Dim() int { return 2 }
+func (spin) Derivs(t float64, y, dy []float64) {
+	rho := y[0]*y[0] + y[1]*y[1]
+	dy[0], dy[1] = rho*y[1], -rho*y[0]
+}
+func (p spin) Jacobian(t float64, y, dy, j []float64) {
+	p.Derivs(t, y, dy)
+	u, v := y[0], y[1]
+	j[0], j[1] = 2*u*v, u*u+3*v*v
+	j[2], j[3] = -3*u*u-v*v, -2*u*v
+}
+func (spin) NumQuadratures() int { return 1 }
+func (spin) Integrands(t float64, y, q []float64) {
+	q[0] = (y[0]*y[0] + y[1]*y[1]) * y[1]
+}
+func (spin) exact(t float64, y []float64) { y[0], y[1] = math.Cos(t), -math.Sin(t) }
 
 // kpr is the problem of Kværnø, Prothero and Robinson (from memory; the solution
 // holds by construction):

@@ -25,6 +25,9 @@ func (r *Radau) Step(tEnd float64) (*Segment, error) {
 			return nil, err
 		}
 		h, cut := r.propose(tEnd)
+		if !cut && h <= r.resolution() {
+			return nil, &StopError{Reason: StepTooSmall, T: r.t, H: h, Component: -1, Detail: "below the resolution of t"}
+		}
 		done, err := r.attempt(h)
 		if err != nil {
 			return nil, err
