@@ -12,7 +12,7 @@ type SpanError struct{ Span, Begin float64 }
 
 func (e *SpanError) Error() string {
 	return fmt.Sprintf("the span ends at %.9g Myr, but the history already stands at %.9g Myr: ask for a longer one, e.g. --span %q",
-		e.Span/megayear, e.Begin/megayear, fmt.Sprintf("%g Myr", 2*e.Begin/megayear))
+		e.Span/Megayear, e.Begin/Megayear, fmt.Sprintf("%g Myr", 2*e.Begin/Megayear))
 }
 
 // nextChange returns the time of the next timed change before limit, or limit.
@@ -61,7 +61,7 @@ func (r *run) change(which []int) error {
 		}
 		detail := strings.Join(words, ", ")
 		if err := r.apply(set, true); err != nil {
-			return fmt.Errorf("change at %.9g Myr (%s): %w", r.t/megayear, detail, err)
+			return fmt.Errorf("change at %.9g Myr (%s): %w", r.t/Megayear, detail, err)
 		}
 		r.made = append(r.made, i)
 		r.pending = without(r.pending, i)

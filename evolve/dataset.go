@@ -161,7 +161,7 @@ func stored(dir string) (*Stored, *record.Frame, error) {
 	s.RunID, errs[1] = first(f.Texts("run_id"))
 	s.ScenarioID, errs[2] = first(f.Texts("scenario_id"))
 	s.End, errs[3] = first(f.Floats("end_Myr"))
-	s.End *= megayear
+	s.End *= Megayear
 	if err := errors.Join(errs[:]...); err != nil {
 		return nil, nil, fmt.Errorf("%s is no dataset of one history: %w", dir, err)
 	}

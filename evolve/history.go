@@ -149,7 +149,7 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 	if err := r.start(); err != nil {
 		return nil, err
 	}
-	myr := r.t / megayear
+	myr := r.t / Megayear
 	r.rec = newRecorder(r.p, r.ledger, newGrid(s.Run.Record.EveryMyr, myr), s.Run.Record.Change, r.h.RunID)
 	r.track = newTracker(r.p)
 	if due := r.due(); len(due) > 0 {
@@ -305,7 +305,7 @@ func (r *run) finish() {
 	h := r.h
 	h.End = r.t
 	h.Stats = sum(r.before, r.integ.Stats())
-	myr := r.t / megayear
+	myr := r.t / Megayear
 	if last := h.Scenario.Run.Span; r.t == last {
 		myr = r.spanMyr()
 	}
@@ -324,7 +324,7 @@ func (r *run) finish() {
 // spanMyr is the end of the span as it is written: the multiple of the cadence
 // if it is one.
 func (r *run) spanMyr() float64 {
-	myr := r.t / megayear
+	myr := r.t / Megayear
 	g := r.rec.grid
 	if g.every == nil {
 		return myr

@@ -73,7 +73,7 @@ func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
 func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
 	from := seg.T0
 	for r.grid.every != nil {
-		t := r.grid.time() * megayear
+		t := r.grid.time() * Megayear
 		if t > end || t >= last {
 			break
 		}
@@ -98,10 +98,10 @@ func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64) {
 	if r.change <= 0 || !(b > a) {
 		return
 	}
-	left := r.at(seg, a, a/megayear, sums)
+	left := r.at(seg, a, a/Megayear, sums)
 	for i := 1; i <= subdivisions; i++ {
 		t := a + (b-a)*float64(i)/subdivisions
-		right := r.at(seg, t, t/megayear, sums)
+		right := r.at(seg, t, t/Megayear, sums)
 		r.halve(seg, left, right, sums, finest)
 		if i < subdivisions {
 			r.offer(right, false)
@@ -115,7 +115,7 @@ func (r *recorder) halve(seg *ode.Segment, a, b candidate, sums []float64, depth
 	if depth == 0 || !(t > a.t && t < b.t) {
 		return
 	}
-	m := r.at(seg, t*megayear, t, sums)
+	m := r.at(seg, t*Megayear, t, sums)
 	if r.straight(&a, &b, &m, 0.5*r.change) {
 		return
 	}

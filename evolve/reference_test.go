@@ -136,5 +136,5 @@ func TestVolcanicCycle(t *testing.T) {
 		}
 		near(t, "heat", value(t, b, "Cinder", row.t, "tidal_heat_W"), row.heat, 1e-4)
 	}
-	t.Logf("outcome %s, period %.4g Myr, swing %.4g K, closures %.2g %.2g, %+v", h.Outcome, h.Bodies[0].Period/megayear, h.Bodies[0].Swing, h.Closure.Energy, h.Closure.Momentum, h.Stats)
+	t.Logf("outcome %s, period %.4g Myr, swing %.4g K, closures %.2g %.2g, %+v", h.Outcome, h.Bodies[0].Period/Megayear, h.Bodies[0].Swing, h.Closure.Energy, h.Closure.Momentum, h.Stats)
 }

@@ -7,9 +7,10 @@ import (
 	"tidekiln/thermal"
 )
 
-// Units in which the tables are written.
+// Megayear is the unit of time of the tables, s.
+const Megayear = 1e6 * orbit.Year
+
 const (
-	megayear     = 1e6 * orbit.Year
 	degree       = math.Pi / 180
 	degreePerDay = degree / orbit.Day
 )

@@ -11,15 +11,15 @@ import (
 // resonance angles, are judged by their distance from their instantaneous
 // equilibrium no more: there they are multipliers of an index-2 system, whose
 // error falls a power of h more slowly.
-const oddTime = megayear
+const oddTime = Megayear
 
 // projectionStep is the length of the implicit step that filters librations
 // (years) out of a state and leaves its drift (Myr).
-const projectionStep = 1e-4 * megayear
+const projectionStep = 1e-4 * Megayear
 
 // shortestStep is the length below which the integrator would be following
 // librations: a state off the slow manifold stops with a reason instead.
-const shortestStep = 1e-9 * megayear
+const shortestStep = 1e-9 * Megayear
 
 // options gives the integrator its tolerances: relative ones throughout, above
 // the smallest size that matters of each variable.
@@ -88,7 +88,7 @@ func (p *System) component(i int) string {
 
 // explain words why the integration stopped.
 func (r *run) explain(e *ode.StopError) string {
-	at := fmt.Sprintf("at %.9g Myr", e.T/megayear)
+	at := fmt.Sprintf("at %.9g Myr", e.T/Megayear)
 	where := ""
 	if e.Component >= 0 && e.Component < r.p.dim {
 		where = ", from " + r.p.component(e.Component)
