@@ -92,8 +92,8 @@ func (b *block) row(label, unit, format string, value func(i int) float64) {
 }
 
 const (
-	perBlock   = 4  // bodies that stand side by side within 80 columns
-	labelWidth = 30 // of the left column
+	perBlock   = 3  // bodies that stand side by side within 80 columns
+	labelWidth = 34 // of the left column
 )
 
 func printSurvey(w io.Writer, s *scenarios.Scenario, e *evolve.Estimates) {
@@ -143,7 +143,7 @@ func printBodies(w io.Writer, bodies []evolve.BodyEstimate) {
 	b.row("displacement", "m", "%.3g", of(func(o *be) float64 { return o.Stretch.Displacement }))
 	b.row("stretch-work bound", "W", "%.3g", of(func(o *be) float64 { return o.Stretch.Power }))
 	b.row("of it dissipated", "%", "%.2g", of(func(o *be) float64 { return 100 * o.TidalHeat / o.Stretch.Power }))
-	b.row("(dlambda/dt - dvarpi/dt)/n - 1", "%", "%.2g", of(func(o *be) float64 { return 100 * o.ApsidalExcess }))
+	b.row("(dlambda/dt - dvarpi/dt)/n - 1", "%", "%.2g", of(func(o *be) float64 { return math.Round(1e10*o.ApsidalExcess) / 1e8 }))
 	t.Flush()
 }
 
