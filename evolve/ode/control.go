@@ -138,7 +138,7 @@ func (r *Radau) errorTooLarge(h, err float64, worst int) error {
 	r.stats.Rejected++
 	r.control.rejected = true
 	factor := r.factor(err)
-	if r.stats.Steps == 0 {
+	if r.stats.Steps == 0 || math.IsNaN(err) {
 		factor = 0.1
 	}
 	r.haveJac = r.jacHere

@@ -68,17 +68,18 @@ func (r *Radau) predict(h float64) {
 
 // transform writes (m ⊗ 1) src to dst.
 func transform(m *square, s, n int, src, dst []float64) {
+	x0, x1, x2 := src[:n], src[n:2*n], src[2*n:3*n]
 	for i := range s {
 		row, out := &m[i], dst[i*n:(i+1)*n]
-		for k := range out {
-			out[k] = row[0] * src[k]
-		}
-		for j := 1; j < s; j++ {
-			mij, in := row[j], src[j*n:(j+1)*n]
-			in = in[:len(out)]
+		if s == 3 {
 			for k := range out {
-				out[k] += mij * in[k]
+				out[k] = row[0]*x0[k] + row[1]*x1[k] + row[2]*x2[k]
 			}
+			continue
+		}
+		x3, x4 := src[3*n:4*n], src[4*n:5*n]
+		for k := range out {
+			out[k] = row[0]*x0[k] + row[1]*x1[k] + row[2]*x2[k] + row[3]*x3[k] + row[4]*x4[k]
 		}
 	}
 }

@@ -14,7 +14,10 @@ type Options struct {
 	Odd     []bool  // components whose tolerance is multiplied by max(1, OddTime/h); nil: none
 	OddTime float64 // > 0 if Odd has members
 
-	Fast           []bool  // the block projected onto the slow manifold; nil: no projection
+	// Fast is the block projected onto the slow manifold; nil: no projection. It
+	// must include the slow variables that move the centre of the oscillation, or
+	// the state ends at rest instead of moving with it.
+	Fast           []bool
 	ProjectionStep float64 // h of the projection filter, much longer than the fast periods and much shorter than the slow times; > 0 if Fast has members
 
 	Stages int // 3, 5, or 0: 5, but 3 when RTol > 1e-5 and where the Newton iteration of 5 keeps failing

@@ -65,10 +65,7 @@ func NewRadau(sys System, opt Options) (*Radau, error) {
 	if err := opt.check(n); err != nil {
 		return nil, err
 	}
-	r := &Radau{sys: sys, opt: opt, n: n, tab: radau5()}
-	if opt.Stages == 3 || opt.Stages == 0 && opt.RTol > 1e-5 {
-		r.tab = radau3()
-	}
+	r := &Radau{sys: sys, opt: opt, n: n}
 	numQuadratures := 0
 	if q, ok := sys.(Quadratures); ok {
 		r.quad, numQuadratures = q, q.NumQuadratures()
@@ -104,6 +101,9 @@ func (r *Radau) Start(t float64, y []float64) error {
 	}
 	if math.IsNaN(t) || math.IsInf(t, 0) {
 		return &StopError{Reason: NotFinite, T: t, Component: -1, Detail: "start time"}
+	}
+	if r.tab = radau5(); r.opt.Stages == 3 || r.opt.Stages == 0 && r.opt.RTol > 1e-5 {
+		r.tab = radau3()
 	}
 	r.t = t
 	copy(r.y, y)
@@ -191,7 +191,7 @@ func (r *Radau) decompose(h float64) bool {
 		return false
 	}
 	for k := range r.tab.s / 2 {
-		// The pair w = p − … is solved as p + iq with the conjugate shift.
+		// For u = p + iq the real pair [α β; −β α] is the factor α − iβ.
 		if !shiftComplex(r.pairs[k], complex(r.tab.alpha[k]/h, -r.tab.beta[k]/h), r.jac) {
 			return false
 		}
