@@ -29,6 +29,9 @@ func (r *reader) changes(n *node, top *scope) []Change {
 		r.report(path{"change"}, "is "+n.form.String()+", not a list", "write [[change]] in double brackets")
 		return nil
 	}
+	if len(n.items) == 0 {
+		return nil
+	}
 	base := r.root.clone()
 	base.drop("change")
 	base.drop("observed")
@@ -152,9 +155,10 @@ func (r *reader) set(base *node, s setting) {
 	}
 	const hint = "a change may set keys of central.tide and of interiors, but not the model itself"
 	var p *Problem
+	orbiters, whole := base.find(s.path[:min(len(s.path), 2)])
 	switch {
-	case len(s.path) > 1 && s.path[0] == "orbiter" && base.table["orbiter"].child(s.path[1]) == nil:
-		p = fail("there is no orbiter "+quote(s.path[1]), choose(s.path[1], base.table["orbiter"].names))
+	case len(s.path) > 1 && s.path[0] == "orbiter" && !whole:
+		p = fail("there is no orbiter "+quote(s.path[1]), choose(s.path[1], orbiters.names))
 	case fixed(base, s.path):
 		p = fail("cannot be changed during the history", hint)
 	default:

@@ -88,14 +88,14 @@ func TestParseQuantityRefuses(t *testing.T) {
 func TestFormattedNumbersReadBackToTheBit(t *testing.T) {
 	// A fixed multiplicative sequence walks mantissas and exponents.
 	x := 1.2345678901234567e-30
-	for range 2000 {
+	for range 400 {
 		for _, u := range []string{"km", "deg/day", "Myr", "J/kg/K", "d", "GPa"} {
 			text := formatQuantity(x, u)
 			if got, err := ParseQuantity(text, u); err != nil || got != x {
 				t.Fatalf("%v is written %q, which reads back as %v, %v", x, text, got, err)
 			}
 		}
-		x *= -1.0731
+		x *= -1.4142731
 	}
 	for x, want := range map[float64]string{0: "0", 66000: "66000", 0.012: "0.012", 1.6e27: "1.6e27", -1.3e-5: "-1.3e-5", 12.5: "12.5", 1e7: "1e7", 9999999: "9999999"} {
 		if got := formatNumber(x); got != want {

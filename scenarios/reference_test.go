@@ -87,7 +87,7 @@ func TestReaderKnowsWhatKeysList(t *testing.T) {
 func TestKeysShowDefaultsAndRanges(t *testing.T) {
 	want := map[string]Reference{
 		"run.tolerance":                            {Range: "at least 1e-12 and at most 0.001", Default: "1e-7", Kind: "number", Fixed: true},
-		"run.start":                                {Range: "at least 0 Myr", Default: `"0 Myr"`, Kind: "quantity", Unit: "Myr", Fixed: true},
+		"run.start":                                {Range: "at least 0 Myr and at most 1e7 Myr", Default: `"0 Myr"`, Kind: "quantity", Unit: "Myr", Fixed: true},
 		"orbiter.NAME.mass":                        {Range: "above 0 kg", Kind: "quantity", Unit: "kg", Required: true, Fixed: true},
 		"central.tide.law":                         {Kind: "choice", Required: true},
 		"orbiter.NAME.interior.temperature":        {Law: `interior.model = "rock"`, Range: "above 0 K", Kind: "quantity", Unit: "K", Required: true},

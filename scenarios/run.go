@@ -7,10 +7,13 @@ import (
 	"tidekiln/scenarios/key"
 )
 
+// A span is at least a year, and at most as long as the longest-lived stars.
+const oneYear, longest = 31557600, 1e13 * 31557600
+
 var runKeys = []key.Key{
-	{Name: "span", Kind: key.Quantity, Unit: "Myr", Range: key.Positive(), Fixed: true,
+	{Name: "span", Kind: key.Quantity, Unit: "Myr", Range: key.Between(oneYear, longest), Fixed: true,
 		Meaning: "length of the history"},
-	{Name: "start", Kind: key.Quantity, Unit: "Myr", Default: 0.0, Range: key.AtLeast(0), Fixed: true,
+	{Name: "start", Kind: key.Quantity, Unit: "Myr", Default: 0.0, Range: key.Between(0, longest), Fixed: true,
 		Meaning: "age of the system when the history begins, for decaying isotopes"},
 	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic"}, Default: "adiabatic", Fixed: true,
 		Meaning: "how librations are treated: adiabatic steps over them"},

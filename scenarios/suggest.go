@@ -16,6 +16,9 @@ func nearest(name string, known []string) string {
 	sort.Strings(sorted)
 	best, least := "", max(1, len(name)/3)+1
 	for _, k := range sorted {
+		if len(k) > 64 {
+			continue
+		}
 		d := editDistance(strings.ToLower(name), strings.ToLower(k))
 		if d < least && d < len(k) {
 			best, least = k, d
