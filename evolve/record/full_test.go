@@ -31,7 +31,7 @@ func TestDiskFull(t *testing.T) {
 	dir := filepath.Join(parent, "out")
 	must(t, writeSample(dir, 1, 10, CreateOptions{}))
 	// 40,000 rows of a smooth column take some 300 kB.
-	err := writeSample(dir, 2, killTimes, CreateOptions{Replace: true})
+	err := writeSample(dir, 2, 20000, CreateOptions{Replace: true})
 	if !errors.Is(err, ErrFull) {
 		t.Fatalf("error %v, want ErrFull", err)
 	}

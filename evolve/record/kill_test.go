@@ -15,7 +15,7 @@ import (
 
 // killTimes is the size of the datasets of the victims, large enough that
 // writing takes longer than starting a process.
-const killTimes = 20000
+const killTimes = 8000
 
 // TestMain lets the test binary play the victim: with RECORD_VICTIM set it
 // writes a dataset there, and with RECORD_RUNS further ones over it.
@@ -98,7 +98,7 @@ func TestKillReplacing(t *testing.T) {
 	dir := filepath.Join(parent, "out")
 	must(t, writeSample(dir, 0, killTimes, CreateOptions{}))
 	random := rand.New(rand.NewPCG(2, 2))
-	for range 10 {
+	for range 8 {
 		// Victims start without Replace, so they need a free name.
 		must(t, os.RemoveAll(dir))
 		cmd := victim(t, dir, 1000)
@@ -108,7 +108,7 @@ func TestKillReplacing(t *testing.T) {
 			}
 			time.Sleep(time.Millisecond)
 		}
-		time.Sleep(time.Duration(random.Float64() * float64(300*time.Millisecond)))
+		time.Sleep(time.Duration(random.Float64() * float64(100*time.Millisecond)))
 		must(t, cmd.Process.Kill())
 		cmd.Wait()
 		w, err := Create(dir, sampleTables(), CreateOptions{Replace: true})
