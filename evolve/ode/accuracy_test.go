@@ -128,6 +128,25 @@ func TestStagesChosen(t *testing.T) {
 	}
 }
 
+// Where steps grow over several radians of the drive of stiffKPR, five stages fail to
+// converge twice running at a loose tolerance: three take over, and give back.
+func TestStagesFollowNewton(t *testing.T) {
+	r := mustRadau(t, stiffKPR, Options{RTol: 1e-6, ATol: same(2, 1e-6)}, 0, []float64{2, math.Sqrt(6)})
+	down, up, last := 0, 0, 5
+	run(t, r, 10, func(seg *Segment) {
+		if seg.tab.s < last {
+			down++
+		}
+		if seg.tab.s > last {
+			up++
+		}
+		last = seg.tab.s
+	})
+	if down == 0 || up == 0 {
+		t.Errorf("%d changes to three stages and %d to five, want some of both", down, up)
+	}
+}
+
 // Equal inputs give equal bits, also after another start of the same Radau.
 func TestDeterminism(t *testing.T) {
 	trace := func(r *Radau) string {

@@ -1,6 +1,9 @@
 package ode
 
-import "slices"
+import (
+	"cmp"
+	"slices"
+)
 
 // Event is a function of the state whose changes of sign are wanted.
 type Event struct {
@@ -79,15 +82,7 @@ func (e *Events) Locate(seg *Segment) []Occurrence {
 		}
 		before = theta
 	}
-	slices.SortStableFunc(e.found, func(a, b Occurrence) int {
-		switch {
-		case a.T < b.T:
-			return -1
-		case a.T > b.T:
-			return 1
-		}
-		return 0
-	})
+	slices.SortStableFunc(e.found, func(a, b Occurrence) int { return cmp.Compare(a.T, b.T) })
 	return e.found
 }
 
@@ -95,12 +90,6 @@ func (e *Events) Locate(seg *Segment) []Occurrence {
 func (e *Events) add(seg *Segment, i int, a, b, fa, fb float64) {
 	value := e.list[i].Value
 	at := root(func(theta float64) float64 {
-		switch theta {
-		case 0:
-			return fa
-		case 1:
-			return fb
-		}
 		seg.at(theta, e.y)
 		return value(seg.T0+theta*seg.h, e.y)
 	}, a, b, fa, fb)

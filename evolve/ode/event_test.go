@@ -37,9 +37,9 @@ func check(t *testing.T, got []Occurrence, want []Occurrence, tol float64) {
 	}
 }
 
-// Two different events and a double crossing in steps of 1.5 (fixed), against the
-// exact times. Tolerance: the polynomial's error, below 1e-4·(slope 1) at h = 1.5 for
-// 5 stages: h⁶/6!·Π|θ − c_i| < 16·1e-3/… measured 2e-5, no closed bound used.
+// Two events in each of two steps of 1.5, against the exact times. The polynomial's
+// error is h⁶/6!·max θΠ|θ − c_i| = 11.4/720·1.2e-3 = 2e-5, over a slope of at least 0.43:
+// 1e-4 allowed.
 func TestEventsInOneStep(t *testing.T) {
 	r := mustRadau(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), Stages: 5, FixedStep: 1.5}, 0, []float64{1, 0})
 	list := []Event{
@@ -67,7 +67,7 @@ func TestEventsDoubleCrossing(t *testing.T) {
 	check(t, locate(t, r, 2.7, list), []Occurrence{
 		{T: math.Asin(0.9), Rising: true},
 		{T: math.Pi - math.Asin(0.9)},
-	}, 2e-3) // the polynomial of a step of 2 rad: a few 1e-4 over the slope 0.44
+	}, 5e-4) // the polynomial, as above: 64/720·1.2e-3 = 1e-4 over a slope of 0.43
 }
 
 // Times to the accuracy of the run: error of y in tolerances over the slope 1.
@@ -87,7 +87,7 @@ func TestEventTimes(t *testing.T) {
 	}
 }
 
-// A bracket whose end is the zero gives that end.
+// Simple, multiple and discontinuous zeros, and zeros at an end, to rounding of x.
 func TestRoot(t *testing.T) {
 	for _, c := range []struct {
 		f    func(float64) float64
@@ -100,9 +100,18 @@ func TestRoot(t *testing.T) {
 		{func(x float64) float64 { d := x - 0.6; return d * d * d * d * d }, 0.6},
 	} {
 		got := root(c.f, 0, 1, c.f(0), c.f(1))
-		// Fifth powers vanish by underflow within 1e-60; rounding of x else.
 		if math.Abs(got-c.want) > 4e-16 {
 			t.Errorf("root %g, want %g", got, c.want)
 		}
 	}
+}
+
+// A value that is exactly 0 at the end of a step occurs once, there, when it has
+// changed sign; one that turns back does not occur.
+func TestEventOnStepEnd(t *testing.T) {
+	r := mustRadau(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), FixedStep: 0.5}, 0, []float64{1, 0})
+	check(t, locate(t, r, 2, []Event{
+		{Value: func(t float64, y []float64) float64 { return t - 1 }},
+		{Value: func(t float64, y []float64) float64 { return (t - 1) * (t - 1) }},
+	}), []Occurrence{{T: 1, Rising: true}}, 1e-15)
 }

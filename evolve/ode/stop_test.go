@@ -87,6 +87,30 @@ func TestStops(t *testing.T) {
 	}
 }
 
+// y' = −k (y − cos t) with k = −1 makes 1 − hJ and γ/h − J vanish at h = 1 and h = γ.
+func TestSingularMatrices(t *testing.T) {
+	var stop *StopError
+	opt := Options{RTol: 1e-8, ATol: same(1, 1e-8), Fast: []bool{true}, ProjectionStep: 1}
+	r, err := NewRadau(relax{-1}, opt)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := r.Start(0, []float64{1}); !errors.As(err, &stop) || stop.Reason != Singular {
+		t.Errorf("projection: error %v, want %v", err, Singular)
+	}
+	gamma := radau3().gamma
+	for _, opt := range []Options{{FixedStep: gamma}, {FirstStep: gamma}} {
+		opt.RTol, opt.ATol, opt.Stages = 1e-4, same(1, 1e-4), 3
+		_, err := mustRadau(t, relax{-1}, opt, 0, []float64{1}).Step(100)
+		if opt.FixedStep > 0 && (!errors.As(err, &stop) || stop.Reason != Singular) {
+			t.Errorf("fixed step: error %v, want %v", err, Singular)
+		}
+		if opt.FixedStep == 0 && err != nil {
+			t.Errorf("a shorter step should do: %v", err)
+		}
+	}
+}
+
 // At t = 1e18 s a step of 0.1 s is none.
 func TestResolutionOfTime(t *testing.T) {
 	for _, opt := range []Options{{FixedStep: 0.1}, {FirstStep: 0.1}, {}} {
