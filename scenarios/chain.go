@@ -42,7 +42,7 @@ func (r *reader) chains(n *node, top *scope) []Chain {
 			c.Members = r.members(members, at.with("members"))
 		}
 		if c.Members == nil || len(r.problems) > before {
-			r.listless = true
+			r.membersUnsure = true
 		}
 		if ratios, ok := v.Map["ratios"].(*node); ok {
 			c.Ratios = r.ratios(ratios, at.with("ratios"))

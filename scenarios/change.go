@@ -95,7 +95,8 @@ func settings(n *node, at path) []setting {
 }
 
 // try reads the scenario with a change's settings and reports what they break.
-// It returns the settings in canonical form and the changed document.
+// It returns the settings in canonical form and the changed document, the old
+// one if they break something.
 func (r *reader) try(base *node, set []setting, at path) ([]Setting, *node) {
 	at = at.with("set")
 	trial := &reader{file: r.file, root: base.clone()}
@@ -126,7 +127,7 @@ func (r *reader) try(base *node, set []setting, at path) ([]Setting, *node) {
 		r.problems = append(r.problems, p)
 	}
 	if broken {
-		return nil, trial.root
+		return nil, base
 	}
 	return s.canonical(set), trial.root
 }

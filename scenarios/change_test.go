@@ -79,3 +79,11 @@ func TestWith(t *testing.T) {
 		}
 	}
 }
+
+func TestABrokenChangeIsReportedOnce(t *testing.T) {
+	src := strings.Replace(base, "central.tide.k2_over_Q = 4e-5", "central.tide.k2_over_Q = -1", 1) + changes
+	_, err := Read("x.toml", []byte(src))
+	if err == nil || strings.Count(err.Error(), "\n  hint:") != 1 || !strings.HasPrefix(err.Error(), "x.toml:42: change[1].set.central.tide.k2_over_Q: -1 is out of range") {
+		t.Errorf("got\n%v", err)
+	}
+}

@@ -53,7 +53,7 @@ func (r *reader) structure(s *Scenario) {
 	}
 	for _, o := range s.Orbiters {
 		at := path{"orbiter", o.Name}
-		if _, locked := member[o.Name]; !locked && !r.hasOrbit(at) && !r.listless {
+		if _, locked := member[o.Name]; !locked && !r.hasOrbit(at) && !r.membersUnsure {
 			r.report(at.with("period"), "is missing", `add period = "NUMBER d" or semimajor_axis = "NUMBER km", or make it a member of a chain`)
 		}
 		if o.Eccentricity >= mostEccentric && withTide(s.Central, o) {

@@ -11,11 +11,11 @@ import (
 
 // reader turns a document into a scenario and collects all that is wrong.
 type reader struct {
-	file     string
-	root     *node
-	local    map[string]unit // M_central and R_central, once they are known
-	listless bool            // a chain's members are in doubt, so nobody is known to be outside one
-	problems Errors
+	file          string
+	root          *node
+	local         map[string]unit // M_central and R_central, once they are known
+	membersUnsure bool            // a chain's members are in doubt, so nobody is known to be outside one
+	problems      Errors
 }
 
 // report hangs a problem on a path; its place is that of the deepest part the
