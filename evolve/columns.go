@@ -80,8 +80,8 @@ var systemTable = newTable("system", "one row a time: the ledger of energy and a
 	float("imposed_energy_J", "J", "energy brought by changes of the rules", "", func(s *systemSample) float64 { return s.imposed }),
 	float("angular_momentum_kg_m2_per_s", "kg m2/s", "Σ(Λ − Γ) of all orbits", "", func(s *systemSample) float64 { return s.momentum }),
 	float("central_impulse_kg_m2_per_s", "kg m2/s", "angular momentum the central body has given to the orbits since the start", noTorque, func(s *systemSample) float64 { return when(s.hasTorque, s.impulse) }),
-	rough("energy_closure", "", "residual of the energy ledger over the energy turned over", "nothing turned over yet", func(s *systemSample) float64 { return s.closure.energy }),
-	rough("momentum_closure", "", "residual of the angular momentum ledger over the impulse turned over", "no torque acted", func(s *systemSample) float64 { return s.closure.momentum }),
+	rough("energy_closure", "", "residual of the energy ledger over the energy turned over, at the end of the step that holds this time", "nothing turned over yet", func(s *systemSample) float64 { return s.closure.energy }),
+	rough("momentum_closure", "", "residual of the angular momentum ledger over the impulse turned over, at the end of the step that holds this time", "no torque acted", func(s *systemSample) float64 { return s.closure.momentum }),
 	rough("step_Myr", "Myr", "step of the integration that holds this time", "the start", func(s *systemSample) float64 { return s.step / Megayear }),
 )
 

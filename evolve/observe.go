@@ -60,7 +60,7 @@ func (r *run) observe(seg *ode.Segment, end float64) {
 }
 
 func (r *run) modelValue(o *observation, t float64, y []float64) float64 {
-	r.rec.sampler.take(t, y, r.ledger, r.ledger.sums, r.step, t/Megayear, false)
+	r.rec.sampler.take(t, y, r.rec.books, r.ledger.sums, t/Megayear, false)
 	return o.value(&r.rec.sampler.bodies[o.index])
 }
 

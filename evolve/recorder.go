@@ -14,6 +14,7 @@ import (
 type recorder struct {
 	sampler *sampler
 	ledger  *ledger
+	books   books
 	grid    *grid
 	change  float64
 	turning []bool
@@ -63,7 +64,8 @@ func (r *recorder) follow(p *System, runID string) {
 
 // state records the state y itself, at t in s and as it is written in Myr.
 func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
-	r.sampler.take(t, y, r.ledger, sums, step, myr, r.grid.on(myr))
+	r.books = books{r.ledger.imposed, r.ledger.closure(r.sampler.p, t, y, sums), step}
+	r.sampler.take(t, y, r.books, sums, myr, r.grid.on(myr))
 	r.offer(r.snapshot(), true)
 }
 
@@ -71,18 +73,23 @@ func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
 // quadratures at its beginning. A row exactly at last, the end of the history,
 // is left to state.
 func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
+	seg.Eval(seg.T1, r.y)
+	for i, q := range seg.Quadratures() {
+		r.q[i] = sums[i] + q
+	}
+	r.books = books{r.ledger.imposed, r.ledger.closure(r.sampler.p, seg.T1, r.y, r.q), seg.T1 - seg.T0}
 	from := seg.T0
 	for r.grid.every != nil {
 		t := r.grid.time() * Megayear
 		if t > end || t >= last {
 			break
 		}
-		r.between(seg, from, t, sums)
+		r.between(seg, from, t, sums, false)
 		r.offer(r.at(seg, t, r.grid.time(), sums), true)
 		r.grid.next++
 		from = t
 	}
-	r.between(seg, from, end, sums)
+	r.between(seg, from, end, sums, end < last)
 }
 
 // subdivisions are the equal parts of a stretch that is looked at first; where
@@ -92,9 +99,17 @@ const (
 	finest       = 7
 )
 
+// lookedAt is the part of the bound that lines between the points looked at may
+// use, and leftOut the part for leaving points out; the rest is a margin for
+// what lies between the places that are checked.
+const (
+	lookedAt = 0.3
+	leftOut  = 0.5
+)
+
 // between offers enough points in (a, b) that lines between them, and from
-// either end, keep half of the bound; the other half is for leaving some out.
-func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64) {
+// either end, keep their part of the bound, and b itself if closed.
+func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64, closed bool) {
 	if r.change <= 0 || !(b > a) {
 		return
 	}
@@ -103,7 +118,7 @@ func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64) {
 		t := a + (b-a)*float64(i)/subdivisions
 		right := r.at(seg, t, t/Megayear, sums)
 		r.halve(seg, left, right, sums, finest)
-		if i < subdivisions {
+		if i < subdivisions || closed {
 			r.offer(right, false)
 		}
 		left = right
@@ -116,8 +131,13 @@ func (r *recorder) halve(seg *ode.Segment, a, b candidate, sums []float64, depth
 		return
 	}
 	m := r.at(seg, t*Megayear, t, sums)
-	if r.straight(&a, &b, &m, 0.5*r.change) {
-		return
+	if r.straight(&a, &b, &m, lookedAt*r.change) {
+		// An error that is odd about the middle shows only beside it.
+		u := 0.75*a.t + 0.25*b.t
+		q := r.at(seg, u*Megayear, u, sums)
+		if r.straight(&a, &b, &q, lookedAt*r.change) {
+			return
+		}
 	}
 	r.halve(seg, a, m, sums, depth-1)
 	r.offer(m, false)
@@ -131,7 +151,7 @@ func (r *recorder) at(seg *ode.Segment, t, myr float64, sums []float64) candidat
 	for i, s := range sums {
 		r.q[i] += s
 	}
-	r.sampler.take(t, r.y, r.ledger, r.q, seg.T1-seg.T0, myr, r.grid.on(myr))
+	r.sampler.take(t, r.y, r.books, r.q, myr, r.grid.on(myr))
 	return r.snapshot()
 }
 
@@ -175,7 +195,7 @@ func (r *recorder) offer(c candidate, must bool) {
 			if bad {
 				break
 			}
-			bad = !r.straight(r.anchor, &c, &r.pending[i], 0.5*r.change)
+			bad = !r.straight(r.anchor, &c, &r.pending[i], leftOut*r.change)
 		}
 		if bad {
 			last := r.pending[len(r.pending)-1]

@@ -92,28 +92,37 @@ func newSampler(p *System, runID string) *sampler {
 	return s
 }
 
+// books is the state of the ledger that samples share: what was imposed, and
+// how the accounts close at the end of the step that holds them. Between the
+// ends of steps the states are interpolated, which is not the books' error.
+type books struct {
+	imposed float64
+	closure closure
+	step    float64 // s
+}
+
 // take fills the samples at (t, y); sums are the quadratures up to t.
-func (s *sampler) take(t float64, y []float64, l *ledger, sums []float64, step float64, myr float64, grid bool) {
+func (s *sampler) take(t float64, y []float64, b books, sums []float64, myr float64, grid bool) {
 	p := s.p
 	p.set(y)
 	p.evaluate(y, s.dy, false)
 	p.fluxes(t, s.q)
 	at := func(m *moment) { m.t, m.grid = myr, grid }
 	for i := range p.bodies {
-		b, o := &p.bodies[i], &s.bodies[i]
-		g := &p.groups[b.group]
+		body, o := &p.bodies[i], &s.bodies[i]
+		g := &p.groups[body.group]
 		at(&o.moment)
-		o.orbit = g.Elements(b.member, y[g.at:g.at+g.Dim()], g.rates)
-		o.interior = b.interior != nil
+		o.orbit = g.Elements(body.member, y[g.at:g.at+g.Dim()], g.rates)
+		o.interior = body.interior != nil
 		o.heat, o.loss, o.radiogenic = s.q[perBody*i+heatOf], s.q[perBody*i+lossOf], s.q[perBody*i+radiogenicOf]
 		o.convective, o.melt = math.NaN(), math.NaN()
-		if b.interior == nil {
+		if body.interior == nil {
 			continue
 		}
-		o.love = b.interior.Love(o.orbit.KeplerMotion)
-		o.state = b.interior.Snapshot()
-		if b.states > 0 {
-			f := b.interior.Balance(p.age(t))
+		o.love = body.interior.Love(o.orbit.KeplerMotion)
+		o.state = body.interior.Snapshot()
+		if body.states > 0 {
+			f := body.interior.Balance(p.age(t))
 			o.convective, o.melt = f.ConvectiveLoss, f.MeltLoss
 		}
 	}
@@ -151,7 +160,6 @@ func (s *sampler) take(t float64, y []float64, l *ledger, sums []float64, step f
 		o.hasTorque = o.hasTorque || p.bodies[i].primary != nil
 	}
 	total := sums[perBody*len(p.bodies):]
-	o.work, o.impulse, o.imposed = total[centralWork], total[centralTorque], l.imposed
-	o.closure = l.closure(p, t, y, sums)
-	o.step = step
+	o.work, o.impulse, o.imposed = total[centralWork], total[centralTorque], b.imposed
+	o.closure, o.step = b.closure, b.step
 }

@@ -74,7 +74,11 @@ func (s *Segment) Quadratures() []float64 { return s.dq }
 // polynomial through the integrands at the stages. Its error is of order h^(s+1)
 // inside the step and that of Quadratures at T1.
 func (s *Segment) QuadraturesTo(t float64, q []float64) {
-	if t == s.T1 {
+	switch t {
+	case s.T0:
+		clear(q[:len(s.dq)])
+		return
+	case s.T1:
 		copy(q, s.dq)
 		return
 	}
