@@ -374,26 +374,39 @@ func TestInterruption(t *testing.T) {
 	}
 }
 
-// Ends that are results: an orbit inside the Roche limit, a stop that was
-// asked for, and a step budget that makes a failed row.
+// bare is the lone moon without an interior, on an orbit of that size.
+func bare(t *testing.T, a, e, k string, more ...scenarios.Edit) *scenarios.Scenario {
+	return shipped(t, "lone-moon", append([]scenarios.Edit{
+		set("run.span", "10 Gyr"), set("run.record", "100 Myr"),
+		{Path: "orbiter.Ember.interior", Unset: true}, {Path: "orbiter.Ember.period", Unset: true},
+		set("orbiter.Ember.semimajor_axis", a), set("orbiter.Ember.eccentricity", e), set("central.tide.k2_over_Q", k),
+	}, more...)...)
+}
+
+// Ends that are results: orbits that meet, an eccentricity near 1, a stop that
+// was asked for, and a step budget that makes a failed row.
 func TestEnds(t *testing.T) {
-	// A moon pulled in by its own tide alone: an eccentric orbit whose
-	// pericentre is just outside the limit shrinks at constant angular momentum,
-	// which moves the pericentre outward; the central body's tide, reversed in
-	// sign by no law here, can't pull it in. So start the pericentre falling by
-	// pumping e: the eccentric central tide does.
-	h := run1(t, shipped(t, "lone-moon", set("run.span", "10 Gyr"), set("run.record", "100 Myr"),
-		scenarios.Edit{Path: "orbiter.Ember.interior", Unset: true}, scenarios.Edit{Path: "orbiter.Ember.period", Unset: true},
-		set("orbiter.Ember.semimajor_axis", "4e5 km"), set("orbiter.Ember.eccentricity", "0.78"), set("central.tide.k2_over_Q", "1e-2")))
-	if h.Status == Complete {
-		t.Logf("a in the end: %+v", h.Bodies[0])
+	last := func(h *History) Event { return h.Events[len(h.Events)-1] }
+
+	// The tide of the central body pumps e of an orbit without a tide of its own.
+	h := run1(t, bare(t, "4e5 km", "0.6", "1e-4"))
+	if h.Status != Ended || last(h).Name != EventEccentricityLimit || math.Abs(h.Bodies[0].Eccentricity.Max-nearlyParabolic) > 1e-7 {
+		t.Errorf("%s (%s) at e = %g, want the end at e = %g", h.Status, h.Reason, h.Bodies[0].Eccentricity.Max, nearlyParabolic)
 	}
+
+	// The heavier inner one is pushed out faster and meets the outer one.
+	h = run1(t, bare(t, "3e5 km", "0", "1e-3", set("orbiter.Pebble", `{ mass = "1e17 kg", radius = "40 km", semimajor_axis = "3.2e5 km" }`)))
+	b := bodiesOf(t, h)
+	end := h.End / Megayear
+	if h.Status != Ended || last(h).Name != EventOrbitsCross || h.Outcome != Disrupted || h.OrbitOutcome != OrbitDisrupted {
+		t.Errorf("%s (%s), %s/%s, want crossing orbits", h.Status, h.Reason, h.Outcome, h.OrbitOutcome)
+	}
+	near(t, "semi-major axis at the crossing", value(t, b, "Ember", end, "semimajor_axis_km"), value(t, b, "Pebble", end, "semimajor_axis_km"), 1e-7)
 
 	s := shipped(t, "lone-moon", scenarios.Edit{Path: "run.stop", Value: `[{ event = "solidus-crossed", body = "Ember" }]`})
 	h = run1(t, s)
-	last := h.Events[len(h.Events)-1]
-	if h.Status != Ended || last.Name != "solidus-crossed" || !last.Ends || h.End != last.Time || !strings.Contains(h.Reason, "solidus-crossed: Ember") {
-		t.Errorf("%s (%s) at %g Myr with %+v, want the stop asked for", h.Status, h.Reason, h.End/Megayear, last)
+	if e := last(h); h.Status != Ended || e.Name != "solidus-crossed" || !e.Ends || h.End != e.Time || !strings.Contains(h.Reason, "solidus-crossed: Ember") {
+		t.Errorf("%s (%s) at %g Myr with %+v, want the stop asked for", h.Status, h.Reason, h.End/Megayear, e)
 	}
 
 	h = run1(t, shipped(t, "volcanic-cycle", set("run.max_steps", "100")))
@@ -402,5 +415,93 @@ func TestEnds(t *testing.T) {
 	}
 	if f := bodiesOf(t, h); f.Len() < 10 {
 		t.Errorf("a failed history keeps %d rows", f.Len())
+	}
+}
+
+// The limits that end a history, at states on either side of them.
+func TestLimits(t *testing.T) {
+	p, y, err := NewSystem(shipped(t, "volcanic-cycle"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	find := func(name, body string, beyond []float64) {
+		t.Helper()
+		found := 0
+		for _, w := range p.watchlist(nil) {
+			if w.Name != name || w.body != body || !w.ends {
+				continue
+			}
+			before, after := w.Value(0, y), w.Value(0, beyond)
+			if before*after < 0 && (w.Direction == 0 || float64(w.Direction)*after > 0) {
+				found++
+			}
+		}
+		if found != 1 {
+			t.Errorf("%d events %s of %s between the two states, want 1", found, name, body)
+		}
+	}
+	moved := func(i int, v float64) []float64 {
+		z := append([]float64(nil), y...)
+		z[i] = v
+		return z
+	}
+	// Cinder's Roche limit: 2.44 R_c (ρ_c/ρ)^{1/3} = 2.44 · 66000 km · (1.6e27/9.1e22)^{1/3} · 1790/66000.
+	limit := 2.44 * 1790e3 * math.Cbrt(1.6e27/9.1e22)
+	a, e := p.shape(0, y)
+	find(EventRocheLimit, "Cinder", moved(0, math.Sqrt(0.999*limit/(a*(1-e)))-1))
+	find(EventEccentricityLimit, "Cinder", moved(3, 1.18))
+	find(EventOrbitsCross, "Cinder", moved(0, 0.27))
+	find(EventResonanceLeft, "Brine", moved(9, -1.6))
+	find(EventResonanceLeft, "Cairn", moved(5, -y[5]))
+	if lax := p.watchlist([]scenarios.Trigger{{Event: "solidus-crossed", Body: "Cinder"}}); !lax[0].ends {
+		t.Error("a stop that was asked for does not end the history")
+	}
+}
+
+func TestJudging(t *testing.T) {
+	const n = 401
+	build := func(f func(x float64) float64, heat, loss float64, molten bool) track {
+		tr := track{kelvin: noExtremes(), e: noExtremes(), power: noExtremes()}
+		for i := 0; i < n; i++ {
+			x := float64(i) / (n - 1) * 1000
+			tr.time = append(tr.time, x*Megayear)
+			tr.temperature = append(tr.temperature, f(x))
+			tr.heat, tr.loss = append(tr.heat, heat*x*Megayear), append(tr.loss, loss*x*Megayear)
+			tr.molten = append(tr.molten, molten && i == n-1)
+		}
+		return tr
+	}
+	wave := func(swing float64) func(float64) float64 {
+		return func(x float64) float64 { return 1650 + swing/2*math.Sin(2*math.Pi*x/100) }
+	}
+	for _, c := range []struct {
+		name       string
+		tr         track
+		radiogenic float64
+		want       string
+	}{
+		{"flat and balanced", build(func(float64) float64 { return 1650 }, 1, 1.005, false), 0, Steady},
+		{"balanced by radiogenic heat", build(func(float64) float64 { return 1650 }, 0.5, 1, false), 0.5, Steady},
+		{"flat but not balanced", build(func(float64) float64 { return 1650 }, 1, 1.02, false), 0, Drifting},
+		{"balanced but moving", build(func(x float64) float64 { return 1650 + x/400 }, 1, 1, false), 0, Drifting},
+		{"five maxima", build(wave(6), 1, 1.1, false), 0, Oscillating},
+		{"swing too small", build(wave(4), 1, 1.1, false), 0, Drifting},
+		{"two maxima", build(func(x float64) float64 { return 1650 + 10*math.Sin(2*math.Pi*x/230) }, 1, 1.1, false), 0, Drifting},
+		{"falling", build(func(x float64) float64 { return 1650 - x/10 }, 0.4, 1, false), 0, Cooling},
+		{"falling but heated", build(func(x float64) float64 { return 1650 - x/10 }, 0.6, 1, false), 0, Drifting},
+		{"molten", build(func(float64) float64 { return 2100 }, 1, 1, true), 0, Runaway},
+	} {
+		o := c.tr.judge(0, 1000*Megayear, c.radiogenic)
+		if o.Outcome != c.want {
+			t.Errorf("%s: %s, want %s", c.name, o.Outcome, c.want)
+		}
+		if c.want == Oscillating {
+			// Maxima of a sine sampled 40 times a period, refined by parabolas:
+			// (2π/40)²/8 of the amplitude below, a third of a sample aside at most.
+			near(t, "period", o.Period/Megayear, 100, 0.01)
+			near(t, "swing", o.Swing, 6, 0.005)
+		} else if !math.IsNaN(o.Period) || !math.IsNaN(o.Swing) {
+			t.Errorf("%s: period %g, swing %g of what does not oscillate", c.name, o.Period, o.Swing)
+		}
 	}
 }
