@@ -159,6 +159,9 @@ func (e *evolution) scenario(args []string) (*scenarios.Scenario, *evolve.Contin
 	if err != nil {
 		return nil, nil, err
 	}
+	if !(s.Run.Span > c.Time) {
+		return nil, nil, &evolve.SpanError{Span: s.Run.Span, Begin: c.Time}
+	}
 	if len(rules) > 0 {
 		if _, err := s.With(rules); err != nil {
 			return nil, nil, err

@@ -25,7 +25,12 @@ func summarise(w io.Writer, h *evolve.History, out, picture string) {
 	line("orbits", "%s", h.OrbitOutcome)
 	for i := range h.Bodies {
 		b := &h.Bodies[i]
-		line(b.Body, "%s", bodyLine(b))
+		name := b.Body
+		if b.Outcome != "" {
+			line(name, "%s", outcomeLine(b))
+			name = ""
+		}
+		line(name, "%s", bodyLine(b))
 	}
 	for i, e := range h.Events {
 		const most = 8
@@ -48,15 +53,17 @@ func summarise(w io.Writer, h *evolve.History, out, picture string) {
 	t.Flush()
 }
 
-// bodyLine keeps a body's outcome within the width of a terminal.
+// outcomeLine says what became of a body.
+func outcomeLine(b *evolve.BodyOutcome) string {
+	if math.IsNaN(b.Period) {
+		return b.Outcome
+	}
+	return fmt.Sprintf("%s, period %.3g Myr, swing %.3g K", b.Outcome, b.Period/evolve.Megayear, b.Swing)
+}
+
+// bodyLine gives a body's ranges.
 func bodyLine(b *evolve.BodyOutcome) string {
-	s := b.Outcome
-	if s != "" {
-		s += ", "
-	}
-	if !math.IsNaN(b.Period) {
-		s += fmt.Sprintf("period %.3g Myr, swing %.3g K, ", b.Period/evolve.Megayear, b.Swing)
-	}
+	s := ""
 	if !math.IsNaN(b.Temperature.Min) {
 		s += fmt.Sprintf("%.0f to %.0f K, ", b.Temperature.Min, b.Temperature.Max)
 	}
