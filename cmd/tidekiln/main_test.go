@@ -300,7 +300,7 @@ func TestSignals(t *testing.T) {
 	for signal, want := range map[os.Signal]int{os.Interrupt: 130, syscall.SIGTERM: 75, syscall.SIGUSR1: 75} {
 		dir := t.TempDir()
 		c := program(dir, "evolve", "volcanic-cycle", "--span", "10000 Gyr", "--set", "run.tolerance=1e-11",
-			"--set", "run.record=100 Myr", "--set", "central.tide.k2_over_Q=1e-9", "--set", "run.max_steps=1000000000", "--out", "out", "--figure", "none")
+			"--set", "run.record=10 Myr", "--set", "central.tide.k2_over_Q=1e-9", "--set", "run.max_steps=1000000000", "--out", "out", "--figure", "none")
 		var errs bytes.Buffer
 		c.Stderr = &errs
 		if err := c.Start(); err != nil {
