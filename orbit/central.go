@@ -97,7 +97,8 @@ func (c *PrimaryTide) Kick(l, g float64, t *Kick) {
 	p6 := p * p * p * p * p * p
 	torque := c.m.push * c.k * p6 * p6
 	if !c.eccentric {
-		*t = Kick{Raise: torque, RaiseU: -12 * p * torque, RaiseX: t.RaiseX, PumpX: t.PumpX}
+		t.Raise, t.RaiseU, t.RaiseG = torque, -12*p*torque, 0
+		t.Pump, t.PumpU, t.PumpG = 0, 0, 0
 		return
 	}
 	ratio := g * p

@@ -105,7 +105,7 @@ func (p *panel) orderAt(x float64) int {
 	share := 1.0
 	for j := 2; j <= p.order; j++ {
 		share *= ratio
-		if p.weight[j-1]*share < 1e-15 {
+		if p.weight[j-1]*share < 1e-14 {
 			return j - 1
 		}
 	}
