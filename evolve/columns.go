@@ -2,6 +2,7 @@ package evolve
 
 import (
 	"math"
+	"strings"
 
 	"tidekiln/evolve/record"
 	"tidekiln/thermal"
@@ -122,7 +123,7 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	text("version", "version of the program", "", func(s *runRow) string { return Version() }),
 	whole("physics", "number of the equations, raised whenever results move", func(s *runRow) int64 { return Physics }),
 	text("platform", "operating system and processor: results are equal to the bit within one", "", func(s *runRow) string { return Platform() }),
-	text("status", "complete: the span was reached; ended: an event ended the history; failed: the integration stopped", "", func(s *runRow) string { return s.Status }),
+	text("status", "complete: the span was reached; ended: an event ended the history; failed: the integration stopped; interrupted: it was asked to stop", "", func(s *runRow) string { return s.Status }),
 	text("reason", "what ended the history or stopped the integration", "complete", func(s *runRow) string { return s.Reason }),
 	text("judged_body", "the body whose outcome is the history's", "no body has a thermal state", func(s *runRow) string { return s.Judged }),
 	text("outcome", outcomeMeaning, "no body has a thermal state and none was lost", func(s *runRow) string { return s.Outcome }),
@@ -134,6 +135,7 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	float("energy_closure", "", "residual of the energy ledger over the energy turned over", "nothing turned over", func(s *runRow) float64 { return s.Closure.energy }),
 	float("momentum_closure", "", "residual of the angular momentum ledger over the impulse turned over", "no torque acted", func(s *runRow) float64 { return s.Closure.momentum }),
 	truth("suspect", "a closure is worse than the tolerance explains", func(s *runRow) bool { return s.Suspect }),
+	text("cautions", "what limits the result, and rules that never acted; separated by semicolons", "there are none", func(s *runRow) string { return strings.Join(s.cautions, "; ") }),
 	float("misfit", "", "root mean square of (model − observed)/error over all observations", "the scenario has no observation", func(s *runRow) float64 { return s.Misfit }),
 	whole("steps", "accepted steps", func(s *runRow) int64 { return int64(s.Stats.Steps) }),
 	whole("rejected_steps", "steps repeated because their error was too large", func(s *runRow) int64 { return int64(s.Stats.Rejected) }),

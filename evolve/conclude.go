@@ -1,12 +1,14 @@
 package evolve
 
+import "tidekiln/scenarios"
+
 // conclude judges every body and the orbits, and fills the tables that wait
 // for the end.
 func (r *run) conclude() {
 	h := r.h
 	lost := map[string]bool{}
 	for _, e := range h.Events {
-		if e.Ends && (e.Name == EventRocheLimit || e.Name == EventOrbitsCross) {
+		if e.Ends && (e.Name == scenarios.EventRocheLimit || e.Name == scenarios.EventOrbitsCross) {
 			lost[e.Body] = true
 			if e.Other != "" {
 				lost[e.Other] = true
@@ -60,7 +62,7 @@ func (r *run) orbits(lost bool) string {
 		return OrbitDisrupted
 	}
 	for _, e := range r.h.Events {
-		if e.Name == EventResonanceLeft {
+		if e.Name == scenarios.EventResonanceLeft {
 			return OrbitLeft
 		}
 	}

@@ -24,6 +24,7 @@ type runRow struct {
 	Begin, End                     float64
 	Closure                        closure
 	Suspect                        bool
+	cautions                       []string
 	Misfit                         float64
 	Stats                          ode.Stats
 	endState, endLedger            []float64
@@ -109,7 +110,7 @@ func (h *History) row() runRow {
 	row := runRow{
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
-		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, Misfit: h.Misfit,
+		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, Misfit: h.Misfit,
 		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {

@@ -9,14 +9,10 @@ import (
 	"tidekiln/scenarios"
 )
 
-// Names of the events that do not come from an interior.
+// Names of the events that no trigger waits for.
 const (
-	EventRocheLimit        = "roche-limit"
-	EventOrbitsCross       = "orbits-cross"
-	EventResonanceLeft     = "resonance-left"
-	EventEccentricityLimit = "eccentricity-limit"
-	EventChange            = "change"
-	EventSpanEnded         = "span-ended"
+	EventChange    = "change"
+	EventSpanEnded = "span-ended"
 )
 
 // Event is something that happened during a history.
@@ -58,19 +54,19 @@ func (p *System) watchlist(stop []scenarios.Trigger) []watched {
 		limit := p.primary.RocheLimit(b.mass, b.radius)
 		list = append(list, watched{
 			body: b.name, ends: true, detail: fmt.Sprintf("pericentre below %.6g km", limit/1e3),
-			Event: ode.Event{Name: EventRocheLimit, Direction: -1, Value: func(_ float64, y []float64) float64 {
+			Event: ode.Event{Name: scenarios.EventRocheLimit, Direction: -1, Value: func(_ float64, y []float64) float64 {
 				a, e := p.shape(i, y)
 				return a*(1-e)/limit - 1
 			}}}, watched{
 			body: b.name, ends: true, detail: fmt.Sprintf("eccentricity above %g", nearlyParabolic),
-			Event: ode.Event{Name: EventEccentricityLimit, Direction: 1, Value: func(_ float64, y []float64) float64 {
+			Event: ode.Event{Name: scenarios.EventEccentricityLimit, Direction: 1, Value: func(_ float64, y []float64) float64 {
 				_, e := p.shape(i, y)
 				return e - nearlyParabolic
 			}}})
 		if i > 0 {
 			list = append(list, watched{
 				body: p.bodies[i-1].name, other: b.name, ends: true,
-				Event: ode.Event{Name: EventOrbitsCross, Direction: -1, Value: func(_ float64, y []float64) float64 {
+				Event: ode.Event{Name: scenarios.EventOrbitsCross, Direction: -1, Value: func(_ float64, y []float64) float64 {
 					in, ein := p.shape(i-1, y)
 					out, eout := p.shape(i, y)
 					return out*(1-eout)/(in*(1+ein)) - 1
@@ -106,7 +102,7 @@ func (g *group) leaving(p *System) []watched {
 		i := g.at + 3*n + r - 1
 		list = append(list, watched{
 			body: name(r), other: name(r + 1), ends: true, detail: "the resonance angle is 90 deg from its centre",
-			Event: ode.Event{Name: EventResonanceLeft, Direction: -1,
+			Event: ode.Event{Name: scenarios.EventResonanceLeft, Direction: -1,
 				Value: func(_ float64, y []float64) float64 { return math.Pi/2 - math.Abs(y[i]) }}})
 	}
 	for k := 0; k < n; k++ {
@@ -117,7 +113,7 @@ func (g *group) leaving(p *System) []watched {
 		}
 		list = append(list, watched{
 			body: name(k), other: name(other), ends: true, detail: "the forced eccentricity changed sign",
-			Event: ode.Event{Name: EventResonanceLeft, Value: func(_ float64, y []float64) float64 { return y[i] }}})
+			Event: ode.Event{Name: scenarios.EventResonanceLeft, Value: func(_ float64, y []float64) float64 { return y[i] }}})
 	}
 	return list
 }

@@ -35,7 +35,8 @@ type History struct {
 	OrbitOutcome string
 	Misfit       float64 // NaN without observations
 	Closure      struct{ Energy, Momentum float64 }
-	Suspect      bool // a closure is worse than the tolerance explains
+	Suspect      bool     // a closure is worse than the tolerance explains
+	Cautions     []string // what limits the result, and rules that never acted
 	Stats        ode.Stats
 	Attempt      Attempt
 
@@ -318,6 +319,7 @@ func (r *run) finish() {
 	h.Suspect = c.energy > bound || c.momentum > bound
 	h.end = end{state: r.y, ledger: r.ledger, changes: r.made}
 	r.conclude()
+	h.Cautions = r.cautions()
 	h.rows["bodies"], h.rows["resonances"], h.rows["system"] = r.rec.bodies, r.rec.resonances, r.rec.system
 }
 

@@ -390,7 +390,7 @@ func TestEnds(t *testing.T) {
 
 	// The tide of the central body pumps e of an orbit without a tide of its own.
 	h := run1(t, bare(t, "4e5 km", "0.6", "1e-4"))
-	if h.Status != Ended || last(h).Name != EventEccentricityLimit || math.Abs(h.Bodies[0].Eccentricity.Max-nearlyParabolic) > 1e-7 {
+	if h.Status != Ended || last(h).Name != scenarios.EventEccentricityLimit || math.Abs(h.Bodies[0].Eccentricity.Max-nearlyParabolic) > 1e-7 {
 		t.Errorf("%s (%s) at e = %g, want the end at e = %g", h.Status, h.Reason, h.Bodies[0].Eccentricity.Max, nearlyParabolic)
 	}
 
@@ -398,7 +398,7 @@ func TestEnds(t *testing.T) {
 	h = run1(t, bare(t, "3e5 km", "0", "1e-3", set("orbiter.Pebble", `{ mass = "1e17 kg", radius = "40 km", semimajor_axis = "3.2e5 km" }`)))
 	b := bodiesOf(t, h)
 	end := h.End / Megayear
-	if h.Status != Ended || last(h).Name != EventOrbitsCross || h.Outcome != Disrupted || h.OrbitOutcome != OrbitDisrupted {
+	if h.Status != Ended || last(h).Name != scenarios.EventOrbitsCross || h.Outcome != Disrupted || h.OrbitOutcome != OrbitDisrupted {
 		t.Errorf("%s (%s), %s/%s, want crossing orbits", h.Status, h.Reason, h.Outcome, h.OrbitOutcome)
 	}
 	near(t, "semi-major axis at the crossing", value(t, b, "Ember", end, "semimajor_axis_km"), value(t, b, "Pebble", end, "semimajor_axis_km"), 1e-7)
@@ -448,11 +448,11 @@ func TestLimits(t *testing.T) {
 	// Cinder's Roche limit: 2.44 R_c (ρ_c/ρ)^{1/3} = 2.44 · 66000 km · (1.6e27/9.1e22)^{1/3} · 1790/66000.
 	limit := 2.44 * 1790e3 * math.Cbrt(1.6e27/9.1e22)
 	a, e := p.shape(0, y)
-	find(EventRocheLimit, "Cinder", moved(0, math.Sqrt(0.999*limit/(a*(1-e)))-1))
-	find(EventEccentricityLimit, "Cinder", moved(3, 1.18))
-	find(EventOrbitsCross, "Cinder", moved(0, 0.27))
-	find(EventResonanceLeft, "Brine", moved(9, -1.6))
-	find(EventResonanceLeft, "Cairn", moved(5, -y[5]))
+	find(scenarios.EventRocheLimit, "Cinder", moved(0, math.Sqrt(0.999*limit/(a*(1-e)))-1))
+	find(scenarios.EventEccentricityLimit, "Cinder", moved(3, 1.18))
+	find(scenarios.EventOrbitsCross, "Cinder", moved(0, 0.27))
+	find(scenarios.EventResonanceLeft, "Brine", moved(9, -1.6))
+	find(scenarios.EventResonanceLeft, "Cairn", moved(5, -y[5]))
 	if lax := p.watchlist([]scenarios.Trigger{{Event: "solidus-crossed", Body: "Cinder"}}); !lax[0].ends {
 		t.Error("a stop that was asked for does not end the history")
 	}

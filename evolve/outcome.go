@@ -3,6 +3,8 @@ package evolve
 import (
 	"math"
 	"sort"
+
+	"tidekiln/scenarios"
 )
 
 // Outcomes of a body's thermal history, judged over the last half of it.
@@ -20,7 +22,7 @@ const (
 const (
 	OrbitLocked    = "locked"
 	OrbitFree      = "free"
-	OrbitLeft      = EventResonanceLeft
+	OrbitLeft      = scenarios.EventResonanceLeft
 	OrbitDisrupted = Disrupted
 )
 

@@ -92,8 +92,8 @@ func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
 	r.between(seg, from, end, sums, end < last)
 }
 
-// subdivisions are the equal parts of a stretch that is looked at first; where
-// they are not straight enough it is halved at most finest times more.
+// subdivisions are the equal parts of a step that are looked at first; where
+// they are not straight enough they are halved at most finest times more.
 const (
 	subdivisions = 4
 	finest       = 7
@@ -114,11 +114,12 @@ func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64, close
 		return
 	}
 	left := r.at(seg, a, a/Megayear, sums)
-	for i := 1; i <= subdivisions; i++ {
-		t := a + (b-a)*float64(i)/subdivisions
+	parts := math.Ceil(subdivisions * (b - a) / (seg.T1 - seg.T0))
+	for i := 1.0; i <= parts; i++ {
+		t := a + (b-a)*i/parts
 		right := r.at(seg, t, t/Megayear, sums)
 		r.halve(seg, left, right, sums, finest)
-		if i < subdivisions || closed {
+		if i < parts || closed {
 			r.offer(right, false)
 		}
 		left = right

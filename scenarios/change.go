@@ -256,13 +256,32 @@ func (c Change) declared() key.Values {
 // With returns the scenario with a change's settings made. The error is Errors
 // and names each setting that is wrong, fixed, or leaves the scenario so.
 func (s *Scenario) With(set []Setting) (*Scenario, error) {
+	changed, _, err := s.with(set)
+	return changed, err
+}
+
+// Schedule returns the scenario with one more change, at a time in s. Errors are
+// those of With.
+func (s *Scenario) Schedule(at float64, set []Setting) (*Scenario, error) {
+	_, canonical, err := s.with(set)
+	if err != nil {
+		return nil, err
+	}
+	later := *s
+	later.Changes = append(append([]Change(nil), s.Changes...), Change{At: at, Set: canonical})
+	return &later, nil
+}
+
+// with makes settings and returns them in canonical form too.
+func (s *Scenario) with(set []Setting) (*Scenario, []Setting, error) {
 	root, problems := parse("scenario", []byte(s.TOML()))
 	if len(problems) > 0 {
-		return nil, problems
+		return nil, nil, problems
 	}
 	root.drop("change")
 	r := &reader{file: "scenario", root: root}
 	base := root.clone()
+	var made []setting
 	for _, x := range set {
 		e := Edit{Path: x.Path, Value: x.Value}
 		p, value := e.parse()
@@ -271,12 +290,13 @@ func (s *Scenario) With(set []Setting) (*Scenario, error) {
 			continue
 		}
 		value.relocate("set " + x.Path)
-		r.set(base, setting{p, value})
+		made = append(made, setting{p, value})
+		r.set(base, made[len(made)-1])
 	}
 	changed := r.scenario()
 	if len(r.problems) > 0 {
-		return nil, r.problems.sorted()
+		return nil, nil, r.problems.sorted()
 	}
 	changed.Changes = s.Changes
-	return changed, nil
+	return changed, changed.canonical(made), nil
 }

@@ -10,7 +10,7 @@ func TestEdits(t *testing.T) {
 		Edit{Path: "run.span", Value: "2 Gyr"},   // no TOML value: a string
 		Edit{Path: "run.span", Value: `"3 Gyr"`}, // a later edit wins
 		Edit{Path: "central.J2", Value: "0.02"},
-		Edit{Path: "title", Value: "twice # as long\n[x]"}, // looks like more than a value
+		Edit{Path: "title", Value: "twice # as long [x]"}, // looks like more than a value
 		Edit{Path: "orbiter.Cinder.interior", Value: `{ model = "fixed", k2_over_Q = 0.01 }`},
 		Edit{Path: "orbiter.Tern.eccentricity", Unset: true},
 		Edit{Path: "change", Unset: true},
@@ -19,7 +19,7 @@ func TestEdits(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if s.Run.Span != 3000*31557600e6 || s.Central.J2 != 0.02 || s.Title != "twice # as long\n[x]" || s.Orbiters[0].Interior.Law != "fixed" || s.Orbiters[2].Eccentricity != 0 || len(s.Changes)+len(s.Observed) > 0 {
+	if s.Run.Span != 3000*31557600e6 || s.Central.J2 != 0.02 || s.Title != "twice # as long [x]" || s.Orbiters[0].Interior.Law != "fixed" || s.Orbiters[2].Eccentricity != 0 || len(s.Changes)+len(s.Observed) > 0 {
 		t.Errorf("edits gave\n%s", s.TOML())
 	}
 }

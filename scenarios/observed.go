@@ -63,7 +63,7 @@ func (r *reader) inColumn(x any, at path, column string, limit key.Range) float6
 	}
 	u := columnUnit(column)
 	if u == "" {
-		r.report(at, "is "+quote(n.text)+", but the column "+quote(column)+" has no unit", "write a plain number")
+		r.report(at, "is "+quote(n.text)+", but the column "+quote(column)+" has no unit", "write a plain number, or check the column's name: a column with a unit ends in it")
 		return 0
 	}
 	exact, _, p := readQuantity(n.text, u, r.local)

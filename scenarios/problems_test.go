@@ -142,7 +142,7 @@ var problemCases = []struct{ name, old, new, want string }{
   hint: did you mean "Cinder"?`},
 	{"judge without interior", `span = "100 Myr"`, "span = \"100 Myr\"\njudge = \"Brine\"", `base.toml:4: run.judge: Brine has no interior to judge
   hint: name an orbiter with an interior`},
-	{"stop names no body", `span = "100 Myr"`, "span = \"100 Myr\"\nstop = [{ event = \"collision\", body = \"Cyndr\" }]", `base.toml:4: run.stop[1].body: there is no orbiter "Cyndr"
+	{"stop names no body", `span = "100 Myr"`, "span = \"100 Myr\"\nstop = [{ event = \"roche-limit\", body = \"Cyndr\" }]", `base.toml:4: run.stop[1].body: there is no orbiter "Cyndr"
   hint: choose one of Cinder, Brine, Tern`},
 	{"format", `title = "base"`, "title = \"base\"\nformat = 2", `base.toml:2: format: 2 is out of range
   hint: it must be 1`},
@@ -227,6 +227,10 @@ base.toml:28: orbiter.Brine: its pericentre, 93986.2 km, lies inside the Roche l
   hint: give the temperature at which melting begins, then the one at which it is complete`},
 	{"change without time", `at = "50 Myr"`, ``, `base.toml:40: change[1]: has neither at nor when
   hint: add at = "1 Gyr", or when = { event = "NAME" }`},
+	{"event that is none", `span = "100 Myr"`, "span = \"100 Myr\"\nstop = [{ event = \"solidus-crosed\" }]", `base.toml:4: run.stop[1].event: "solidus-crosed" is not one of its choices
+  hint: did you mean "solidus-crossed"?`},
+	{"title with an escape", `title = "base"`, `title = "\u001b[31m"`, `base.toml:1: title: holds a control character
+  hint: write it on one line, in visible characters`},
 	{"change with both", `at = "50 Myr"`, "at = \"50 Myr\"\nwhen = { event = \"x\" }", `base.toml:42: change[1].when: at and when are both given
   hint: remove one`},
 	{"change of nothing", `set = { central.tide.k2_over_Q = 4e-5 }`, `set = {}`, `base.toml:42: change[1].set: holds no paths with values
@@ -236,9 +240,9 @@ base.toml:28: orbiter.Brine: its pericentre, 93986.2 km, lies inside the Roche l
 	{"observed unit", `value = "1e14 W"`, `value = "1e14 K"`, `base.toml:46: observed[1].value: "1e14 K" is a temperature, but a power is needed
   hint: write it in W or another unit of that dimension`},
 	{"observed unit of a pure number", `column = "surface_loss_W"`, `column = "eccentricity"`, `base.toml:46: observed[1].value: is "1e14 W", but the column "eccentricity" has no unit
-  hint: write a plain number
+  hint: write a plain number, or check the column's name: a column with a unit ends in it
 base.toml:47: observed[1].error: is "0.1e14 W", but the column "eccentricity" has no unit
-  hint: write a plain number`},
+  hint: write a plain number, or check the column's name: a column with a unit ends in it`},
 	{"observed error", `error = "0.1e14 W"`, `error = 0`, `base.toml:47: observed[1].error: 0 is out of range
   hint: it must be above 0`},
 	{"observed column", `column = "surface_loss_W"`, `column = "surface loss"`, `base.toml:45: observed[1].column: "surface loss" is not the name of a column

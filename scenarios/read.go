@@ -9,6 +9,7 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
+	"unicode"
 	"unicode/utf8"
 
 	"tidekiln/scenarios/key"
@@ -79,6 +80,9 @@ func (r *reader) scenario() *Scenario {
 	v, _ := r.values(r.root, top)
 	s := &Scenario{}
 	s.Title, _ = v.Map["title"].(string)
+	if strings.ContainsFunc(s.Title, unicode.IsControl) {
+		r.report(path{"title"}, "holds a control character", "write it on one line, in visible characters")
+	}
 	if n := r.table(v, "central"); n != nil {
 		s.Central = r.central(n, top)
 	}

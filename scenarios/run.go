@@ -14,7 +14,7 @@ var runKeys = []key.Key{
 	{Name: "span", Kind: key.Quantity, Unit: "Myr", Range: key.Between(oneYear, longest), Fixed: true,
 		Meaning: "length of the history"},
 	{Name: "start", Kind: key.Quantity, Unit: "Myr", Default: 0.0, Range: key.Between(0, longest), Fixed: true,
-		Meaning: "age of the system when the history begins, for decaying isotopes"},
+		Meaning: "age of the system when the history begins, for laws that depend on it; none of this version does"},
 	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic"}, Default: "adiabatic", Fixed: true,
 		Meaning: "how librations are treated: adiabatic steps over them"},
 	{Name: "tolerance", Kind: key.Number, Default: 1e-7, Range: key.Between(1e-12, 1e-3), Fixed: true,
@@ -22,7 +22,7 @@ var runKeys = []key.Key{
 	{Name: "record", Kind: key.Special, Optional: true, Fixed: true,
 		Meaning: `rows to write: a cadence, "1 Myr"; { change = 1e-3 }, rows between which straight lines reproduce every column to that relative bound; or { every = "1 Myr", change = 1e-3 }; without it the greatest 1, 2 or 5 times a power of ten Myr that gives at least 500 rows`},
 	{Name: "seed", Kind: key.Integer, Default: int64(1), Fixed: true,
-		Meaning: "seed of random phases"},
+		Meaning: "seed of random phases; nothing of this version is random"},
 	{Name: "judge", Kind: key.Text, Optional: true, Fixed: true,
 		Meaning: "orbiter whose outcome is the run's; without it the innermost with a thermal state"},
 	{Name: "max_steps", Kind: key.Integer, Default: int64(1e6), Range: key.AtLeast(1), Fixed: true,
@@ -35,7 +35,7 @@ var runKeys = []key.Key{
 var laterRegimes = []string{"resolved", "auto"}
 
 var triggerKeys = []key.Key{
-	{Name: "event", Kind: key.Text, Fixed: true, Meaning: "name of the event"},
+	{Name: "event", Kind: key.Choice, Choices: eventNames, Fixed: true, Meaning: "name of the event"},
 	{Name: "body", Kind: key.Text, Default: "", Fixed: true, Meaning: "orbiter it must concern, any if empty"},
 	{Name: "other", Kind: key.Text, Default: "", Fixed: true, Meaning: "second orbiter it must concern, any if empty"},
 }
@@ -86,10 +86,6 @@ func (r *reader) trigger(n *node, at path) (Trigger, bool) {
 		return Trigger{}, false
 	}
 	t := Trigger{Event: v.Text("event"), Body: v.Text("body"), Other: v.Text("other")}
-	if !isBare(t.Event) {
-		r.report(at.with("event"), quote(t.Event)+" is not the name of an event", "names have letters, digits, - and _")
-		return t, false
-	}
 	for _, b := range [2][2]string{{"body", t.Body}, {"other", t.Other}} {
 		if b[1] != "" {
 			r.orbiterNamed(b[1], at.with(b[0]))

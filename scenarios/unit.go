@@ -181,6 +181,10 @@ func findUnit(symbol string, local map[string]unit) (unit, *Problem) {
 		p.Hint = "temperatures are in K: add 273.15"
 	case "°":
 		p.Hint = "write deg"
+	case "ga", "ma", "ka", "a":
+		p.Hint = "write Gyr, Myr or yr"
+	case "pa.s":
+		p.Hint = "write Pa s, factors joined by a space"
 	default:
 		if near := nearest(symbol, unitSymbols()); near != "" {
 			p.Hint = "did you mean " + quote(near) + "?"

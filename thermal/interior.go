@@ -97,6 +97,15 @@ type EventFunc struct {
 	Value func(x []float64) float64
 }
 
+// Names of the events of interiors.
+const (
+	EventSolidus  = "solidus-crossed"  // the mantle begins to melt, or is frozen
+	EventLiquidus = "liquidus-crossed" // the mantle is molten, or begins to freeze
+)
+
+// EventNames lists the events that some interior has.
+func EventNames() []string { return []string{EventSolidus, EventLiquidus} }
+
 var interiors = registry[func(Body) (Interior, error)]{
 	{fixedLaw, newFixed},
 	{rockLaw, newRock},

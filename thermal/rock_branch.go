@@ -89,7 +89,7 @@ func (r *rock) Events() []EventFunc {
 		return func(x []float64) float64 { return r.above(x[0], T) }
 	}
 	return []EventFunc{
-		{"solidus-crossed", crossing(r.solidus)},
-		{"liquidus-crossed", crossing(r.liquidus)},
+		{EventSolidus, crossing(r.solidus)},
+		{EventLiquidus, crossing(r.liquidus)},
 	}
 }

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io"
 	"os"
 	"path/filepath"
 	"strings"
@@ -22,6 +23,7 @@ type evolution struct {
 	edits
 	span, from, out, picture string
 	replace, quiet           bool
+	stdout                   io.Writer
 }
 
 func newEvolve() *cobra.Command {
@@ -42,6 +44,7 @@ Other keys of --set then take effect at that time.`,
 		Args:              cobra.MaximumNArgs(1),
 		ValidArgsFunction: completeScenario,
 		RunE: func(c *cobra.Command, args []string) error {
+			e.stdout = c.OutOrStdout()
 			return e.run(c.Context(), args)
 		},
 	}
@@ -71,13 +74,13 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 	if from != nil {
 		parent = from.RunID
 	}
+	if err := checkPicture(e.picture); err != nil {
+		return request(err)
+	}
 	if !e.replace {
 		if there, err := e.already(evolve.RunID(s.ID(), parent)); there || err != nil {
 			return err
 		}
-	}
-	if err := checkPicture(e.picture); err != nil {
-		return request(err)
 	}
 	if err := os.MkdirAll(filepath.Dir(filepath.Clean(e.out)), 0o777); err != nil {
 		return request(fmt.Errorf("%w: choose another --out", err))
@@ -100,7 +103,7 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 	}
 	drawn := e.draw()
 	if !e.quiet {
-		summarise(os.Stdout, h, e.out, drawn)
+		summarise(e.stdout, h, e.out, drawn)
 	}
 	return ending(ctx, h, e.out)
 }
@@ -163,10 +166,9 @@ func (e *evolution) scenario(args []string) (*scenarios.Scenario, *evolve.Contin
 		return nil, nil, &evolve.SpanError{Span: s.Run.Span, Begin: c.Time}
 	}
 	if len(rules) > 0 {
-		if _, err := s.With(rules); err != nil {
+		if s, err = s.Schedule(c.Time, rules); err != nil {
 			return nil, nil, err
 		}
-		s.Changes = append(s.Changes, scenarios.Change{At: c.Time, Set: rules})
 	}
 	return s, c, nil
 }
@@ -175,7 +177,7 @@ func (e *evolution) scenario(args []string) (*scenarios.Scenario, *evolve.Contin
 func (e *evolution) already(runID string) (bool, error) {
 	stored, err := evolve.Describe(e.out)
 	if err != nil {
-		return false, nil // Create says what is wrong with the place
+		return false, nil // record.Create says what is wrong with the place
 	}
 	switch {
 	case stored.RunID != runID:
@@ -184,7 +186,12 @@ func (e *evolution) already(runID string) (bool, error) {
 		return false, request(fmt.Errorf("%s holds this history up to %.6g Myr, where it was interrupted: go on with --from %s --out NEW, or --replace it", e.out, stored.End/evolve.Megayear, e.out))
 	}
 	if !e.quiet {
-		fmt.Printf("already there: %s, run %s (--replace runs it again)\n", e.out, runID)
+		fmt.Fprintf(e.stdout, "already there: %s, run %s (--replace runs it again)\n", e.out, runID)
+	}
+	if _, err := os.Stat(e.picture); err != nil {
+		if drawn := e.draw(); drawn != "" && !e.quiet {
+			fmt.Fprintf(e.stdout, "picture: %s\n", drawn)
+		}
 	}
 	return true, nil
 }

@@ -6,6 +6,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io"
 	"os"
 	"os/signal"
 	"syscall"
@@ -54,7 +55,7 @@ func run(args []string) int {
 	ctx, cancel := context.WithCancelCause(context.Background())
 	defer cancel(nil)
 	signals := make(chan os.Signal, 2)
-	signal.Notify(signals, os.Interrupt, syscall.SIGTERM, syscall.SIGUSR1)
+	signal.Notify(signals, os.Interrupt, syscall.SIGTERM, syscall.SIGUSR1, syscall.SIGHUP)
 	defer signal.Stop(signals)
 	go func() {
 		for s := range signals {
@@ -67,7 +68,12 @@ func run(args []string) int {
 	}()
 	root := newRoot()
 	root.SetArgs(args)
+	stdout := &printer{w: os.Stdout}
+	root.SetOut(stdout)
 	err := root.ExecuteContext(ctx)
+	if err == nil && stdout.err != nil {
+		err = &exit{exitStopped, fmt.Errorf("printing: %w", stdout.err)}
+	}
 	if err == nil {
 		return exitDone
 	}
@@ -80,4 +86,19 @@ func run(args []string) int {
 		complain(os.Stderr, e.err)
 	}
 	return e.code
+}
+
+// printer remembers the first failure to write, which a command's many prints
+// need not look at.
+type printer struct {
+	w   io.Writer
+	err error
+}
+
+func (p *printer) Write(b []byte) (int, error) {
+	n, err := p.w.Write(b)
+	if p.err == nil {
+		p.err = err
+	}
+	return n, err
 }

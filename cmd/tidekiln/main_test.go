@@ -90,7 +90,11 @@ func TestEvolveLeavesTablesAndPicture(t *testing.T) {
 	for _, table := range info.Tables {
 		rows[table.Name] = table.Rows
 	}
-	for name, want := range map[string]int64{"runs": 1, "bodies": 3 * 1501, "resonances": 2 * 1501, "system": 1501, "outcomes": 3, "attempts": 1, "events": 1} {
+	times := rows["system"] // each Myr, and more where things move
+	if times < 1501 || times > 2*1501 {
+		t.Errorf("%d times in 1500 Myr", times)
+	}
+	for name, want := range map[string]int64{"runs": 1, "bodies": 3 * times, "resonances": 2 * times, "outcomes": 3, "attempts": 1, "events": 1} {
 		if rows[name] != want {
 			t.Errorf("%d rows in %s, want %d", rows[name], name, want)
 		}
@@ -338,7 +342,7 @@ func TestSurveyAndReference(t *testing.T) {
 	if code != 0 || errs != "" {
 		t.Fatalf("exit %d, %s", code, errs)
 	}
-	for _, want := range []string{"Cinder", "0.004963", "stretch-work bound / W", "1.206 yr", "steady state of the resonance 5.02e+13 W", "libration centre 180 deg"} {
+	for _, want := range []string{"Cinder", "0.004963", "stretch-work bound / W", "1.206 yr", "steady state of the resonance 5.02e+13 W", "angle centred on 180 deg"} {
 		if !strings.Contains(out, want) {
 			t.Errorf("survey lacks %q:\n%s", want, out)
 		}

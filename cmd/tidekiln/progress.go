@@ -32,7 +32,7 @@ func newProgress(out *os.File, quiet bool) *progress {
 	p := &progress{out: out, quiet: quiet, begun: now, last: now}
 	if !quiet && term.IsTerminal(int(out.Fd())) {
 		p.bar = progressbar.NewOptions(barSteps,
-			progressbar.OptionSetWriter(out), progressbar.OptionClearOnFinish(), progressbar.OptionSetPredictTime(true),
+			progressbar.OptionSetWriter(out), progressbar.OptionClearOnFinish(), progressbar.OptionSetPredictTime(false),
 			progressbar.OptionSetElapsedTime(false), progressbar.OptionFullWidth(), progressbar.OptionThrottle(barPeriod),
 			progressbar.OptionSetTheme(progressbar.Theme{Saucer: "=", SaucerHead: ">", SaucerPadding: " ", BarStart: "[", BarEnd: "]"}))
 	}
@@ -49,13 +49,11 @@ func (p *progress) show(at evolve.Progress) {
 	switch {
 	case p.bar != nil && now.Sub(p.last) > barPeriod:
 		p.last = now
-		p.bar.Describe(fmt.Sprintf("%.4g of %.4g Myr, %d steps", at.Time/evolve.Megayear, at.Span/evolve.Megayear, at.Steps))
+		p.bar.Describe(fmt.Sprintf("%s of %s, %v left", span(at.Time), span(at.Span), p.left(now, share)))
 		p.set(share)
 	case p.bar == nil && now.Sub(p.last) > logPeriod:
 		p.last = now
-		left := time.Duration(float64(now.Sub(p.begun)) * (1 - share) / share)
-		fmt.Fprintf(p.out, "at %.6g of %.6g Myr (%.0f %%), %d steps, about %v left\n",
-			at.Time/evolve.Megayear, at.Span/evolve.Megayear, 100*share, at.Steps, left.Round(time.Second))
+		fmt.Fprintf(p.out, "at %s of %s (%.0f %%), %d steps, about %v left\n", span(at.Time), span(at.Span), 100*share, at.Steps, p.left(now, share))
 	}
 }
 
@@ -67,4 +65,17 @@ func (p *progress) done() {
 	if p.bar != nil {
 		_ = p.bar.Finish()
 	}
+}
+
+// left is the time still needed if the rest goes as fast as what is done.
+func (p *progress) left(now time.Time, share float64) time.Duration {
+	return time.Duration(float64(now.Sub(p.begun)) * (1 - share) / share).Round(time.Second)
+}
+
+// span writes a time, s, in Myr or, where those are many, in Gyr.
+func span(t float64) string {
+	if myr := t / evolve.Megayear; myr < 1e4 {
+		return fmt.Sprintf("%.4g Myr", myr)
+	}
+	return fmt.Sprintf("%.4g Gyr", t/evolve.Megayear/1e3)
 }

@@ -24,9 +24,10 @@ accounts for every watt, and leaves the history as Parquet tables.`,
 		SilenceUsage:  true,
 		SilenceErrors: true,
 		Version:       evolve.Version(),
-		Args:          cobra.NoArgs,
+		Args:          subcommand,
 		RunE:          func(c *cobra.Command, _ []string) error { return c.Help() },
 	}
+	root.SuggestionsMinimumDistance = 2
 	root.SetVersionTemplate("tidekiln {{.Version}}\n")
 	root.AddCommand(newEvolve(), newSurvey(), newFigure(), newScenarios(), newVersion())
 	return root
@@ -88,4 +89,16 @@ func completeScenario(_ *cobra.Command, args []string, _ string) ([]string, cobr
 		names = append(names, s.Name+"\t"+s.Title)
 	}
 	return names, cobra.ShellCompDirectiveDefault
+}
+
+// subcommand refuses a word that is no subcommand, and says which is near.
+func subcommand(c *cobra.Command, args []string) error {
+	if len(args) == 0 {
+		return nil
+	}
+	hint := c.CommandPath() + " --help lists what there is"
+	if near := c.SuggestionsFor(args[0]); len(near) > 0 {
+		hint = "did you mean " + near[0] + "?"
+	}
+	return fmt.Errorf("%s has no command %q: %s", c.CommandPath(), args[0], hint)
 }

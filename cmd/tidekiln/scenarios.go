@@ -18,7 +18,7 @@ func newScenarios() *cobra.Command {
 	c := &cobra.Command{
 		Use:   "scenarios",
 		Short: "List, show and check scenarios; the reference of their keys",
-		Args:  cobra.NoArgs,
+		Args:  subcommand,
 		RunE:  func(c *cobra.Command, _ []string) error { return c.Help() },
 		Example: `  tidekiln scenarios list
   tidekiln scenarios show volcanic-cycle > my.toml
@@ -122,8 +122,9 @@ func newScenariosCheck() *cobra.Command {
 			bad := 0
 			for _, name := range args {
 				s, err := scenarios.Open(name, list...)
+				var cautions []string
 				if err == nil {
-					_, _, err = evolve.NewSystem(s)
+					cautions, err = evolve.Check(s)
 				}
 				if err != nil {
 					bad++
@@ -131,6 +132,9 @@ func newScenariosCheck() *cobra.Command {
 					continue
 				}
 				fmt.Fprintf(c.OutOrStdout(), "%s: valid, scenario %s\n", name, s.ID())
+				for _, caution := range cautions {
+					fmt.Fprintf(c.OutOrStdout(), "  caution: %s\n", caution)
+				}
 			}
 			if bad > 0 {
 				return &exit{exitRequest, nil}

@@ -43,6 +43,9 @@ func summarise(w io.Writer, h *evolve.History, out, picture string) {
 		}
 	}
 	line("ledger", "%s", ledgerLine(h))
+	for _, c := range h.Cautions {
+		line("caution", "%s", c)
+	}
 	if !math.IsNaN(h.Misfit) {
 		line("misfit", "%.3g standard errors", h.Misfit)
 	}
@@ -68,7 +71,7 @@ func bodyLine(b *evolve.BodyOutcome) string {
 		s += fmt.Sprintf("%.0f to %.0f K, ", b.Temperature.Min, b.Temperature.Max)
 	}
 	if !math.IsNaN(b.MeanHeat) {
-		s += fmt.Sprintf("heat %.2g W, ", b.MeanHeat)
+		s += fmt.Sprintf("heat %.2g to %.2g W, ", b.TidalHeat.Min, b.TidalHeat.Max)
 	}
 	return s + fmt.Sprintf("e %.2g to %.2g", b.Eccentricity.Min, b.Eccentricity.Max)
 }

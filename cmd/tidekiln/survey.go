@@ -52,7 +52,14 @@ dissipation from above; the share beside it says how lossy the body is.`,
 			if err != nil {
 				return request(err)
 			}
+			cautions, err := evolve.Check(s)
+			if err != nil {
+				return request(err)
+			}
 			printSurvey(c.OutOrStdout(), s, estimates)
+			for _, caution := range cautions {
+				fmt.Fprintf(c.OutOrStdout(), "\ncaution: %s\n", caution)
+			}
 			return nil
 		},
 	}
@@ -93,7 +100,7 @@ func (b *block) row(label, unit, format string, value func(i int) float64) {
 
 const (
 	perBlock   = 3  // bodies that stand side by side within 80 columns
-	labelWidth = 34 // of the left column
+	labelWidth = 36 // of the left column
 )
 
 func printSurvey(w io.Writer, s *scenarios.Scenario, e *evolve.Estimates) {
@@ -143,7 +150,7 @@ func printBodies(w io.Writer, bodies []evolve.BodyEstimate) {
 	b.row("displacement", "m", "%.3g", of(func(o *be) float64 { return o.Stretch.Displacement }))
 	b.row("stretch-work bound", "W", "%.3g", of(func(o *be) float64 { return o.Stretch.Power }))
 	b.row("of it dissipated", "%", "%.2g", of(func(o *be) float64 { return 100 * o.TidalHeat / o.Stretch.Power }))
-	b.row("(dlambda/dt - dvarpi/dt)/n - 1", "%", "%.2g", of(func(o *be) float64 { return math.Round(1e10*o.ApsidalExcess) / 1e8 }))
+	b.row("forcing frequency over n, less 1", "%", "%.2g", of(func(o *be) float64 { return math.Round(1e10*o.ApsidalExcess) / 1e8 }))
 	t.Flush()
 }
 
@@ -161,15 +168,16 @@ func printChain(w io.Writer, c *evolve.ChainEstimate) {
 	for _, r := range c.Resonances {
 		fmt.Fprintf(t, "  %s\t%s and %s\toffset %.4g deg/day", r.Ratio, r.Inner, r.Outer, r.Offset/perDay)
 		if !math.IsNaN(r.Centre) {
-			fmt.Fprintf(t, "\tlibration centre %.0f deg", r.Centre*180/math.Pi)
+			fmt.Fprintf(t, "\tangle centred on %.0f deg", r.Centre*180/math.Pi)
 		}
 		fmt.Fprintln(t)
 	}
 	t.Flush()
-	fmt.Fprintln(w, "  librations, damped at")
+	fmt.Fprintln(w, "  librations")
 	t = tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
+	fmt.Fprintln(t, "    period / yr\tdamping / /Myr\t")
 	for _, m := range c.Modes {
-		fmt.Fprintf(t, "    %.4g yr\t%.3g /Myr\t\n", m.Period()/orbit.Year, -m.Growth*evolve.Megayear)
+		fmt.Fprintf(t, "    %.4g\t%.3g\t\n", m.Period()/orbit.Year, -m.Growth*evolve.Megayear)
 	}
 	t.Flush()
 	fmt.Fprintf(w, "  heat now %.3g W, in the steady state of the resonance %.3g W\n", c.Heat, c.SteadyHeat)

@@ -1,0 +1,14 @@
+package scenarios
+
+import "tidekiln/thermal"
+
+// Names of the events that triggers may wait for, besides those of interiors.
+const (
+	EventRocheLimit        = "roche-limit"        // pericentre inside the Roche limit; ends the history
+	EventOrbitsCross       = "orbits-cross"       // two neighbours' orbits meet; ends the history
+	EventResonanceLeft     = "resonance-left"     // a chain lost its lock; ends the history
+	EventEccentricityLimit = "eccentricity-limit" // nearly parabolic; ends the history
+)
+
+// eventNames are the names a trigger may give.
+var eventNames = append([]string{EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventEccentricityLimit}, thermal.EventNames()...)
