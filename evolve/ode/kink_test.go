@@ -80,6 +80,12 @@ func TestKinkTimeAndSegment(t *testing.T) {
 			run(t, r, 2.5, func(seg *Segment) {
 				if seg.KinkCrossed() == 0 {
 					crossed = seg.T1
+					// Asked after the crossing, the inside is still that of the old branch.
+					var y [1]float64
+					mid := (seg.T0 + seg.T1) / 2
+					if seg.Eval(mid, y[:]); math.Abs(y[0]-mid) > 1e-12 {
+						t.Errorf("y = %g at t = %g, want the same", y[0], mid)
+					}
 				}
 			})
 			// y = t is integrated exactly and the step landed to 1e-12 of its length.
