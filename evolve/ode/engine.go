@@ -17,6 +17,7 @@ type engine struct {
 	kinks  kinks
 
 	started bool
+	met     crossing // the kink the last step ended on, to be crossed
 	t       float64
 	y       []float64
 	f       []float64 // at (t, y) if haveF
@@ -79,6 +80,7 @@ func newEngine(m Method, rhs RightHandSide, opt Options, terms, nodes int) (engi
 // is not kept.
 func (e *engine) Start(t float64, y []float64) error {
 	e.started = false
+	e.met = crossing{kink: -1}
 	if len(y) != e.n {
 		return fmt.Errorf("ode: start state has %d values for %d components", len(y), e.n)
 	}

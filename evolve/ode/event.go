@@ -2,6 +2,7 @@ package ode
 
 import (
 	"cmp"
+	"math"
 	"slices"
 )
 
@@ -25,26 +26,40 @@ type Events struct {
 	list  []Event
 	side  []int8    // last sign other than 0
 	last  []float64 // value at the last point seen
+	noise []float64 // what a value must exceed to have left the zero it started on
 	y     []float64
 	found []Occurrence
 }
 
 // NewEvents prepares the search for a list of events; Reset must follow.
 func NewEvents(list []Event) *Events {
-	return &Events{list: slices.Clone(list), side: make([]int8, len(list)), last: make([]float64, len(list))}
+	return &Events{list: slices.Clone(list), side: make([]int8, len(list)), last: make([]float64, len(list)), noise: make([]float64, len(list))}
 }
 
 // Reset forgets the past and takes (t, y) as the start; an event whose value is 0
-// there does not occur by leaving 0.
-func (e *Events) Reset(t float64, y []float64) {
+// there does not occur by leaving 0. Those that have just occurred at this state
+// are named in passed: their sign there is rounding, and they stay on the side
+// they crossed to until they have left it.
+func (e *Events) Reset(t float64, y []float64, passed ...Occurrence) {
 	if len(e.y) != len(y) {
 		e.y = make([]float64, len(y))
 	}
 	for i, ev := range e.list {
 		e.last[i] = ev.Value(t, y)
-		e.side[i] = sign(e.last[i])
+		e.side[i], e.noise[i] = sign(e.last[i]), 0
+	}
+	for _, o := range passed {
+		e.side[o.Event] = -1
+		if o.Rising {
+			e.side[o.Event] = 1
+		}
+		e.noise[o.Event] = awayFromZero * math.Abs(e.last[o.Event])
 	}
 }
+
+// awayFromZero is how many times the value left by locating an event must be
+// exceeded: another start near it leaves a value of the same size.
+const awayFromZero = 8
 
 // Locate returns the occurrences in a segment, which must follow that of the last
 // call or start at the state of Reset, in order of time. Changes of sign are seen
@@ -63,10 +78,11 @@ func (e *Events) Locate(seg *Segment) []Occurrence {
 		for i, ev := range e.list {
 			v := ev.Value(t, e.y)
 			to := sign(v)
-			if to == 0 {
+			if to == 0 || math.Abs(v) <= e.noise[i] {
 				e.last[i] = v
 				continue
 			}
+			e.noise[i] = 0
 			if e.side[i] == -to && ev.Direction != -int(to) {
 				e.add(seg, i, before, theta, e.last[i], v)
 				// The point is needed again by the events that follow.

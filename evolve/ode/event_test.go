@@ -147,3 +147,51 @@ func TestEventOnStepEnd(t *testing.T) {
 		})
 	}
 }
+
+// A start on an event that has just occurred: the sign of its value there is
+// rounding on either side, and it does not occur again until it turns back.
+func TestEventsPassedDoNotOccurAgain(t *testing.T) {
+	for _, left := range []float64{-1e-13, 0, 1e-13} {
+		r, err := NewRadau(circle{}, Options{RTol: 1e-9, ATol: []float64{1e-9, 1e-9}})
+		if err != nil {
+			t.Fatal(err)
+		}
+		// y₀ = cos t falls through 0 at π/2; the start is left off it.
+		start := math.Pi/2 - left
+		y := []float64{math.Cos(start), -math.Sin(start)}
+		if err := r.Start(start, y); err != nil {
+			t.Fatal(err)
+		}
+		e := NewEvents([]Event{{Name: "zero", Value: func(_ float64, y []float64) float64 { return y[0] }}})
+		e.Reset(start, y, Occurrence{Event: 0})
+		var times []float64
+		for r.T() < 6 {
+			seg, err := r.Step(6)
+			if err != nil {
+				t.Fatal(err)
+			}
+			for _, o := range e.Locate(seg) {
+				times = append(times, o.T)
+				if !o.Rising {
+					t.Errorf("left %g off: falls again at %g", left, o.T)
+				}
+			}
+		}
+		// The dense output's error at this tolerance stays below 1e-7.
+		if len(times) != 1 || math.Abs(times[0]-1.5*math.Pi) > 1e-7 {
+			t.Errorf("left %g off: occurs at %v, want 3π/2 only", left, times)
+		}
+	}
+}
+
+// circle is y₀ = cos t, y₁ = −sin t.
+type circle struct{}
+
+func (circle) Dim() int { return 2 }
+
+func (circle) Derivs(_ float64, y, dy []float64) { dy[0], dy[1] = y[1], -y[0] }
+
+func (c circle) Jacobian(t float64, y, dy, jac []float64) {
+	c.Derivs(t, y, dy)
+	copy(jac, []float64{0, 1, -1, 0})
+}

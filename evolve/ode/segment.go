@@ -9,7 +9,7 @@ type Segment struct {
 	n    int
 	h    float64
 	y0   []float64
-	y1   []float64 // the state at T1, after projection if the step ends on a kink
+	y1   []float64 // the state at T1
 	z    []float64 // terms of the polynomial, one after another
 	w    []float64 // scratch: their weights
 	q    []float64 // integrands at the nodes, node by node
@@ -45,7 +45,7 @@ func (s *Segment) complete() {
 
 // Eval writes to y the polynomial at t in [T0, T1]; its error is of order h^(s+1)
 // for Radau, h⁵ for Rosenbrock and h⁸ for DOP853. At T0 and T1 it is exactly the
-// state. If the step ends on a kink the state at T1 is that after projection.
+// state. If the step ends on a kink the next one begins after a projection.
 func (s *Segment) Eval(t float64, y []float64) {
 	switch t {
 	case s.T0:

@@ -15,6 +15,12 @@ func (e *engine) Step(tEnd float64) (*Segment, error) {
 	if !(tEnd > e.t) || math.IsInf(tEnd, 0) {
 		return nil, fmt.Errorf("ode: step end %g must be finite and after t = %g", tEnd, e.t)
 	}
+	if met := e.met; met.kink >= 0 {
+		e.met.kink = -1
+		if err := e.cross(met); err != nil {
+			return nil, err
+		}
+	}
 	for {
 		attempts := e.stats.Steps + e.stats.Rejected + e.stats.NewtonFailures
 		if e.opt.MaxSteps > 0 && attempts >= e.opt.MaxSteps {
@@ -59,9 +65,7 @@ func (e *engine) Step(tEnd float64) (*Segment, error) {
 			continue
 		}
 		e.scheme.accept(h, size, cut)
-		if err := e.advance(met); err != nil {
-			return nil, err
-		}
+		e.advance(met)
 		return e.seg, nil
 	}
 }
@@ -72,8 +76,9 @@ func (e *engine) try(h float64) (bool, error) {
 	return e.scheme.attempt(h)
 }
 
-// advance makes the step tried the last one, and crosses the kink it ends on.
-func (e *engine) advance(met crossing) error {
+// advance makes the step tried the last one. A kink it ends on is crossed when
+// the next one begins, so that until then f is that of the step.
+func (e *engine) advance(met crossing) {
 	s := e.next
 	if e.quad != nil {
 		s.sample(e.quad, e.point)
@@ -83,12 +88,5 @@ func (e *engine) advance(met crossing) error {
 	e.t = s.T1
 	copy(e.y, s.y1)
 	e.seg, e.next = s, e.seg
-	if met.kink < 0 {
-		return nil
-	}
-	s.complete() // while f is still that of the step
-	s.kink = met.kink
-	err := e.cross(met)
-	copy(s.y1, e.y)
-	return err
+	s.kink, e.met = met.kink, met
 }
