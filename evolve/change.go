@@ -70,7 +70,10 @@ func (r *run) change(which []int) error {
 	if err := r.start(); err != nil {
 		return err
 	}
-	r.rec.follow(r.p, r.h.RunID)
+	if err := r.carried.restart(r.p, r.t, r.y); err != nil {
+		return err
+	}
+	r.rec.follow(r.p, r.carried, r.h.RunID)
 	return nil
 }
 
