@@ -55,8 +55,8 @@ type news struct {
 	detail    string
 }
 
-// occurred returns the events of the last step, of each mode the first.
-func (l *carrier) occurred() []news {
+// occurred returns the events of the last step, which ended at t1.
+func (l *carrier) occurred(t1 float64) []news {
 	var list []news
 	for i := range l.chains {
 		c := &l.chains[i]
@@ -65,17 +65,17 @@ func (l *carrier) occurred() []news {
 			list = append(list, news{i, mode, event, t, direction, "chain " + name + ": " + detail})
 		}
 		if c.lost {
-			if !c.saidLost {
-				tell(3, -1, c.to.t, "", "a libration no longer oscillates about its centre; librations are not known from here on")
+			if !c.toldLost {
+				tell(3, -1, t1, "", "a libration no longer oscillates about its centre; librations are not known from here on")
 			}
 			continue
 		}
-		end := c.at(c.to.t)
-		for k := range c.to.size {
+		end := c.at(c.end().t)
+		for k := range c.toldWide {
 			switch {
 			case !end.overstable(k):
-				c.saidWide[k] = false
-			case !c.saidWide[k]:
+				c.toldWide[k] = false
+			case !c.toldWide[k]:
 				t := c.when(func(i instant) bool { return i.overstable(k) })
 				now := c.at(t)
 				_, angle := now.widest(k)
@@ -86,12 +86,12 @@ func (l *carrier) occurred() []news {
 		near := func(i instant) bool { return i.slowest() < nearFold*c.first }
 		switch {
 		case !near(end):
-			c.saidFold = false
-		case !c.saidFold:
+			c.toldFold = false
+		case !c.toldFold:
 			tell(1, -1, c.when(near), "falling", fmt.Sprintf("least squared frequency of a libration below %g of its first value", nearFold))
 		}
-		if c.to.cross != "" {
-			tell(2, -1, c.to.t, "", "librations "+c.to.cross+" cross within less time than their frequencies take to repel each other")
+		if c.cross != "" {
+			tell(2, -1, c.end().t, "", "librations "+c.cross+" cross within less time than their frequencies take to repel each other")
 		}
 	}
 	return list
@@ -113,7 +113,7 @@ func (r *run) occurred(seg *ode.Segment) ([]occurrence, error) {
 	for _, o := range r.events.Locate(seg) {
 		list = append(list, occurrence{o, nil})
 	}
-	for _, n := range r.carried.occurred() {
+	for _, n := range r.carried.occurred(seg.T1) {
 		// Those of the first chain are the first without a value.
 		at := slices.IndexFunc(r.watch, func(w watched) bool { return w.Value == nil })
 		y := make([]float64, r.p.dim)
@@ -139,11 +139,11 @@ func (l *carrier) told(n *news) {
 	c := &l.chains[n.chain]
 	switch n.event {
 	case 0:
-		c.saidWide[n.mode] = true
+		c.toldWide[n.mode] = true
 	case 1:
-		c.saidFold = true
+		c.toldFold = true
 	case 3:
-		c.saidLost = true
+		c.toldLost = true
 	}
 }
 
@@ -156,7 +156,7 @@ func (i instant) overstable(k int) bool {
 // when returns the time within the last step at which a condition that holds at
 // its end came to hold.
 func (c *libration) when(holds func(instant) bool) float64 {
-	low, high := c.from.t, c.to.t
+	low, high := c.begin().t, c.end().t
 	if holds(c.at(low)) {
 		return low // the drift's part jumps between steps
 	}
@@ -171,14 +171,4 @@ func (c *libration) when(holds func(instant) bool) float64 {
 			low = t
 		}
 	}
-}
-
-// angleName names the angle of a half-width.
-func (l *carrier) angleName(c *libration, angle int) string {
-	g := &l.p.groups[c.group]
-	name := func(k int) string { return l.p.bodies[g.body[k]].name }
-	if n := g.Members(); angle >= n {
-		return fmt.Sprintf("resonance of %s and %s", name(angle-n+1), name(angle-n+2))
-	}
-	return "pericentre of " + name(angle)
 }

@@ -1,10 +1,6 @@
 package evolve
 
-import (
-	"fmt"
-	"math"
-	"slices"
-)
+import "math"
 
 // librationSample is one libration at one time, SI.
 type librationSample struct {
@@ -23,7 +19,7 @@ type librationSample struct {
 func (l *carrier) samples(runID string) []librationSample {
 	var list []librationSample
 	for i := range l.chains {
-		for k := range l.chains[i].to.size {
+		for k := range l.chains[i].toldWide {
 			list = append(list, librationSample{
 				moment: moment{runID: runID}, chain: l.p.groups[l.chains[i].group].name, mode: k + 1,
 			})
@@ -38,8 +34,11 @@ func (l *carrier) sample(t, myr float64, grid bool, out []librationSample, reson
 	next, pair := 0, 0
 	for i := range l.chains {
 		c := &l.chains[i]
-		now := c.at(t)
-		for k := range c.to.size {
+		var now instant
+		if !c.lost {
+			now = c.at(t)
+		}
+		for k := range c.toldWide {
 			o := &out[next]
 			next++
 			o.t, o.grid = myr, grid
@@ -70,71 +69,4 @@ func (l *carrier) sample(t, myr float64, grid bool, out []librationSample, reson
 			}
 		}
 	}
-}
-
-// The values that a continued history takes up: of each chain the first least
-// ω², whether a fold has been told, whether it is lost, and of each mode ω,
-// ln √I and whether it has been told to be overstable.
-const (
-	perLibratingChain = 3
-	perLibration      = 3
-)
-
-// pack lists them at t, s.
-func (l *carrier) pack(t float64) []float64 {
-	list := []float64{}
-	for i := range l.chains {
-		c := &l.chains[i]
-		now := c.at(t)
-		list = append(list, c.first, number(c.saidFold), number(c.lost))
-		for k := range c.to.size {
-			list = append(list, now.frequency(k), now.size(k), number(c.saidWide[k]))
-		}
-	}
-	return list
-}
-
-func number(b bool) float64 {
-	if b {
-		return 1
-	}
-	return 0
-}
-
-// unpack takes them up: every mode those of the frequency nearest to its own.
-// Modes that have crossed get the places back that they had.
-func (l *carrier) unpack(list []float64) error {
-	want := 0
-	for i := range l.chains {
-		want += perLibratingChain + perLibration*len(l.chains[i].to.size)
-	}
-	if len(list) != want {
-		return fmt.Errorf("the dataset ends with %d values of librations, the scenario has %d: its chains differ", len(list), want)
-	}
-	for i := range l.chains {
-		c := &l.chains[i]
-		modes := c.to.modes.Modes
-		head, rows := list[:perLibratingChain], list[perLibratingChain:perLibratingChain+perLibration*len(modes)]
-		list = list[perLibratingChain+len(rows):]
-		c.first, c.saidFold = head[0], head[1] != 0
-		if head[2] != 0 {
-			c.lost, c.saidLost = true, true
-		}
-		if c.lost {
-			continue
-		}
-		for k := range modes {
-			row := rows[perLibration*k:]
-			near := k
-			for j := k; j < len(modes); j++ {
-				if math.Abs(modes[j].Frequency-row[0]) < math.Abs(modes[near].Frequency-row[0]) {
-					near = j
-				}
-			}
-			modes[k], modes[near] = modes[near], modes[k]
-			c.to.width[k], c.to.width[near] = c.to.width[near], c.to.width[k]
-			c.to.size[k], c.saidWide[k] = math.Min(row[1], math.Log(math.Pi/slices.Max(c.to.width[k]))), row[2] != 0
-		}
-	}
-	return nil
 }
