@@ -34,10 +34,10 @@ type libration struct {
 	group  int
 	knots  []*knot // of the last step, its beginning first; one at a start
 	spare  []*knot
-	angles []string // their names
-	first  float64  // least ω² at the start of the history, s⁻²
-	cross  string   // modes that crossed in the last step, or ""
-	lost   bool     // the centre is unstable: nothing is known any more
+	angles []string  // their names
+	first  float64   // least ω² at the start of the history, s⁻²
+	passed []passage // of modes in the last step
+	lost   bool      // the centre is unstable: nothing is known any more
 	// What has been told and is not to be told again while it lasts.
 	toldWide           []bool
 	toldFold, toldLost bool
@@ -141,7 +141,7 @@ func (l *carrier) advance(seg *ode.Segment) error {
 		c.knots[0], c.knots[last] = c.knots[last], c.knots[0]
 		c.spare = append(c.spare, c.knots[1:]...)
 		c.knots = c.knots[:1]
-		c.cross = ""
+		c.passed = c.passed[:0]
 		if c.lost {
 			continue
 		}
@@ -175,16 +175,9 @@ func (l *carrier) find(c *libration, seg *ode.Segment, a, b *knot) error {
 	return nil
 }
 
-// carry follows the modes from the last knot to the time t within a step.
-//
-// Two librations whose frequencies would cross repel each other instead, and
-// over the slow drift of a chain each keeps its place in the order of
-// frequencies and its action, while their vectors change places. Steps may be
-// longer than that takes, so a stretch over which modes change places or
-// character is halved, on the polynomial of the step, until they do so smoothly.
-// A stretch much shorter than 1/√|dΔω/dt| needs no halving: a gap that is not
-// seen there is jumped (Landau 1932, Phys. Z. Sowjetunion 2, 46; Zener 1932,
-// Proc. R. Soc. A 137, 696), and the modes keep their character and cross.
+// carry follows the modes from the last knot to the time t within a step. A
+// stretch in which modes change places or character is halved, on the polynomial
+// of the step, until they do so smoothly or it is short (see [passage]).
 func (l *carrier) carry(c *libration, seg *ode.Segment, t float64) error {
 	a := c.end()
 	span := t - a.t
@@ -195,83 +188,52 @@ func (l *carrier) carry(c *libration, seg *ode.Segment, t float64) error {
 	if err := l.find(c, seg, m, b); err != nil {
 		return err
 	}
-	crossed := ""
-	for _, half := range [2][2]*knot{{a, m}, {m, b}} {
-		smooth, i, j := compare(half[0], half[1])
-		if smooth {
-			continue
-		}
-		turn := math.Abs(half[1].gap(i, j)-half[0].gap(i, j)) / (0.5 * span)
-		if 0.5*span > sharp/math.Sqrt(turn) && m.t > a.t && b.t > m.t {
+	smooth, i, j := compare(a, m)
+	if smooth {
+		smooth, i, j = compare(m, b)
+	}
+	if !smooth {
+		pass := meet(a, m, b, i, j)
+		if pass.wide(span) && m.t > a.t && b.t > m.t {
 			c.spare = append(c.spare, m, b)
 			if err := l.carry(c, seg, m.t); err != nil {
 				return err
 			}
 			return l.carry(c, seg, t)
 		}
-		crossed = fmt.Sprintf("%d and %d", i+1, j+1)
-	}
-	if crossed != "" {
-		c.cross = crossed
+		c.spare = append(c.spare, m)
+		pass.carryOver(a, b)
+		c.knots = append(c.knots, b)
+	} else {
+		for i := range a.size {
+			// The parabola through three values, over either half.
+			f, g, h := a.modes.Modes[i].Growth, m.modes.Modes[i].Growth, b.modes.Modes[i].Growth
+			m.drift[i], _ = orbit.Transport(&a.modes.Modes[i], &m.modes.Modes[i])
+			b.drift[i], _ = orbit.Transport(&m.modes.Modes[i], &b.modes.Modes[i])
+			// Over the whole it would be wrong by four times as much.
+			whole, _ := orbit.Transport(&a.modes.Modes[i], &b.modes.Modes[i])
+			better := (m.drift[i] + b.drift[i] - whole) / 6
+			m.drift[i] += better
+			b.drift[i] += better
+			m.size[i] = m.bounded(i, a.size[i]+m.drift[i]+span/24*(5*f+8*g-h))
+			b.size[i] = b.bounded(i, m.size[i]+b.drift[i]+span/24*(5*h+8*g-f))
+		}
+		c.knots = append(c.knots, m, b)
 	}
 	for i := range a.size {
-		// The parabola through three values, over either half.
-		f, g, h := a.modes.Modes[i].Growth, m.modes.Modes[i].Growth, b.modes.Modes[i].Growth
-		m.drift[i], _ = orbit.Transport(&a.modes.Modes[i], &m.modes.Modes[i])
-		b.drift[i], _ = orbit.Transport(&m.modes.Modes[i], &b.modes.Modes[i])
-		m.size[i] = m.bounded(i, a.size[i]+m.drift[i]+span/24*(5*f+8*g-h))
-		b.size[i] = b.bounded(i, m.size[i]+b.drift[i]+span/24*(5*h+8*g-f))
+		for j := range i {
+			if pass := meet(a, m, b, j, i); pass.counts() {
+				pass.exchange(b)
+				c.passed = append(c.passed, pass)
+			}
+		}
 	}
-	c.knots = append(c.knots, m, b)
 	return nil
 }
 
 // bounded is a size of mode i, or the one that makes it 180° wide.
 func (k *knot) bounded(i int, size float64) float64 {
 	return math.Min(size, math.Log(math.Pi/slices.Max(k.width[i])))
-}
-
-// sharp, in units of 1/√|dΔω/dt|, is the stretch within which a gap that is not
-// seen is jumped: such a gap 2a is passed within the stretch, so that
-// a < sharp/2 · √|dΔω/dt|, and the modes keep their character with a probability
-// exp(−2πa²/|dΔω/dt|) > 0.9.
-const sharp = 0.25
-
-// alike is how much a mode must resemble itself over a stretch: there a mixing
-// of two modes by 0.3 rad still leaves the transport, of third order in it,
-// within a few per cent.
-const alike = 0.9
-
-// gap is the difference of two modes' frequencies.
-func (k *knot) gap(i, j int) float64 { return k.modes.Modes[i].Frequency - k.modes.Modes[j].Frequency }
-
-// compare reports whether all modes keep their order and character from a to b,
-// and if not which two do not: those that change places, or else the one that
-// has changed most and its nearest in frequency.
-func compare(a, b *knot) (smooth bool, first, second int) {
-	n := len(a.modes.Modes)
-	for i := range n {
-		for j := i + 1; j < n; j++ {
-			if a.gap(i, j) > 0 != (b.gap(i, j) > 0) {
-				return false, i, j
-			}
-		}
-	}
-	smooth = true
-	worst := alike
-	for i := range n {
-		_, likeness := orbit.Transport(&a.modes.Modes[i], &b.modes.Modes[i])
-		if likeness = math.Min(likeness, 1/likeness); !(likeness >= worst) {
-			smooth, worst, first = false, likeness, i
-		}
-	}
-	near := math.Inf(1)
-	for j := range n {
-		if d := math.Abs(b.gap(first, j)); j != first && d < near {
-			near, second = d, j
-		}
-	}
-	return smooth, first, second
 }
 
 // restart goes on under a system whose rules have changed, at (t, y) within the
@@ -281,9 +243,10 @@ func (l *carrier) restart(p *System, t float64, y []float64) error {
 	l.linearise(t, y)
 	for i := range l.chains {
 		c := &l.chains[i]
-		if c.lost {
+		if c.toldLost {
 			continue
 		}
+		c.lost = false // after the present time
 		k := newKnot(p.groups[c.group].chain)
 		k.t = t
 		for j := range k.size {

@@ -90,8 +90,8 @@ func (l *carrier) occurred(t1 float64) []news {
 		case !c.toldFold:
 			tell(1, -1, c.when(near), "falling", fmt.Sprintf("least squared frequency of a libration below %g of its first value", nearFold))
 		}
-		if c.cross != "" {
-			tell(2, -1, c.end().t, "", "librations "+c.cross+" cross within less time than their frequencies take to repel each other")
+		for _, p := range c.passed {
+			tell(2, -1, p.t, "", fmt.Sprintf("librations %d and %d come so near in frequency that they exchange %.3g of their actions", p.i+1, p.j+1, math.Min(p.crossing, 1-p.crossing)))
 		}
 	}
 	return list

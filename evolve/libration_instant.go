@@ -17,7 +17,7 @@ type instant struct {
 	theta    float64
 }
 
-// at returns the instant t, s, of the last step.
+// at returns the instant t, s, of the last step, or the last that is known.
 func (c *libration) at(t float64) instant {
 	k := sort.Search(len(c.knots)-1, func(k int) bool { return c.knots[k].t >= t })
 	i := instant{from: c.knots[max(0, k-1)], to: c.knots[k], theta: 1}
@@ -25,7 +25,7 @@ func (c *libration) at(t float64) instant {
 		i.to = c.knots[1]
 	}
 	if i.span = i.to.t - i.from.t; i.span > 0 {
-		i.theta = (t - i.from.t) / i.span
+		i.theta = math.Min(1, (t-i.from.t)/i.span)
 	}
 	return i
 }
