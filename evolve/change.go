@@ -70,9 +70,7 @@ func (r *run) change(which []int) error {
 	if err := r.start(); err != nil {
 		return err
 	}
-	if err := r.carried.restart(r.p, r.t, r.y); err != nil {
-		return err
-	}
+	r.carried.restart(r.p, r.t, r.y)
 	r.rec.follow(r.p, r.carried, r.h.RunID)
 	return nil
 }

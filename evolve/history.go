@@ -224,10 +224,7 @@ func (r *run) advance() error {
 	end := seg.T1
 	var trigger *occurrence
 	fired := -1
-	occurred, err := r.occurred(seg)
-	if err != nil {
-		return err
-	}
+	occurred := r.occurred(seg)
 	for i := range occurred {
 		o := &occurred[i]
 		w := &r.watch[o.Event]

@@ -1,8 +1,6 @@
 package evolve
 
 import (
-	"errors"
-	"fmt"
 	"math"
 	"slices"
 
@@ -31,13 +29,14 @@ type carrier struct {
 
 // libration carries those of one chain.
 type libration struct {
-	group  int
-	knots  []*knot // of the last step, its beginning first; one at a start
-	spare  []*knot
-	angles []string  // their names
-	first  float64   // least ω² at the start of the history, s⁻²
-	passed []passage // of modes in the last step
-	lost   bool      // the centre is unstable: nothing is known any more
+	group    int
+	knots    []*knot // of the last step, its beginning first; one at a start
+	spare    []*knot
+	angles   []string  // their names
+	first    float64   // least ω² at the start of the history, s⁻²
+	passed   []passage // of modes in the last step
+	halvings int       // in the last step
+	lost     error     // why nothing is known any more: the centre is unstable
 	// What has been told and is not to be told again while it lasts.
 	toldWide           []bool
 	toldFold, toldLost bool
@@ -83,10 +82,7 @@ func newCarrier(p *System, t float64, y []float64, stored []float64) (*carrier, 
 		c := &l.chains[i]
 		k := c.end()
 		k.t = t
-		if err := c.fail(l, t, k.modes.Find(l.block(c), p.dim)); err != nil {
-			return nil, err
-		}
-		if c.lost {
+		if c.lost = k.modes.Find(l.block(c), p.dim); c.lost != nil {
 			continue
 		}
 		l.widths(c, k, y)
@@ -121,35 +117,19 @@ func (l *carrier) widths(c *libration, k *knot, y []float64) {
 	}
 }
 
-// fail turns an unstable centre into a loss and adds the place to other errors.
-func (c *libration) fail(l *carrier, t float64, err error) error {
-	if errors.Is(err, orbit.ErrUnstable) {
-		c.lost = true
-		return nil
-	}
-	if err != nil {
-		return fmt.Errorf("chain %s at %.9g Myr: %w", l.p.groups[c.group].name, t/Megayear, err)
-	}
-	return nil
-}
-
 // advance carries every chain over an accepted step.
-func (l *carrier) advance(seg *ode.Segment) error {
+func (l *carrier) advance(seg *ode.Segment) {
 	for i := range l.chains {
 		c := &l.chains[i]
 		last := len(c.knots) - 1
 		c.knots[0], c.knots[last] = c.knots[last], c.knots[0]
 		c.spare = append(c.spare, c.knots[1:]...)
 		c.knots = c.knots[:1]
-		c.passed = c.passed[:0]
-		if c.lost {
-			continue
-		}
-		if err := c.fail(l, seg.T1, l.carry(c, seg, seg.T1)); err != nil {
-			return err
+		c.passed, c.halvings = c.passed[:0], 0
+		if c.lost == nil {
+			c.lost = l.carry(c, seg, seg.T1)
 		}
 	}
-	return nil
 }
 
 // knot returns one that is not in use, at the time t.
@@ -175,6 +155,10 @@ func (l *carrier) find(c *libration, seg *ode.Segment, a, b *knot) error {
 	return nil
 }
 
+// mostHalvings bounds the work of a step: a passage takes some ten, and modes
+// that resemble themselves in no stretch are not worth more.
+const mostHalvings = 64
+
 // carry follows the modes from the last knot to the time t within a step. A
 // stretch in which modes change places or character is halved, on the polynomial
 // of the step, until they do so smoothly or it is short (see [passage]).
@@ -194,7 +178,8 @@ func (l *carrier) carry(c *libration, seg *ode.Segment, t float64) error {
 	}
 	if !smooth {
 		pass := meet(a, m, b, i, j)
-		if pass.wide(span) && m.t > a.t && b.t > m.t {
+		if !pass.short(span) && c.halvings < mostHalvings {
+			c.halvings++
 			c.spare = append(c.spare, m, b)
 			if err := l.carry(c, seg, m.t); err != nil {
 				return err
@@ -238,7 +223,7 @@ func (k *knot) bounded(i int, size float64) float64 {
 
 // restart goes on under a system whose rules have changed, at (t, y) within the
 // last step or at its end: the actions stay.
-func (l *carrier) restart(p *System, t float64, y []float64) error {
+func (l *carrier) restart(p *System, t float64, y []float64) {
 	l.p = p
 	l.linearise(t, y)
 	for i := range l.chains {
@@ -246,17 +231,15 @@ func (l *carrier) restart(p *System, t float64, y []float64) error {
 		if c.toldLost {
 			continue
 		}
-		c.lost = false // after the present time
 		k := newKnot(p.groups[c.group].chain)
 		k.t = t
 		for j := range k.size {
 			k.size[j] = c.at(t).size(j)
 		}
-		if err := c.fail(l, t, k.modes.Track(c.end().modes, l.block(c), p.dim)); err != nil {
-			return err
+		// What was lost later in a step that a change cuts short is not.
+		if c.lost = k.modes.Track(c.end().modes, l.block(c), p.dim); c.lost == nil {
+			l.widths(c, k, y)
+			c.knots, c.spare = []*knot{k}, nil // the others are the old system's
 		}
-		l.widths(c, k, y)
-		c.knots, c.spare = []*knot{k}, nil // the others are the old system's
 	}
-	return nil
 }

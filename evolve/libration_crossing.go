@@ -87,9 +87,9 @@ func meet(a, m, b *knot, i, j int) passage {
 	return pass
 }
 
-// wide reports whether a stretch is long enough to be halved.
-func (p *passage) wide(span float64) bool {
-	return !(span*span*p.slope < shortPassage*shortPassage)
+// short reports whether a stretch is to be passed at once.
+func (p *passage) short(span float64) bool {
+	return p.slope > 0 && span*span*p.slope < shortPassage*shortPassage
 }
 
 // carryOver carries all modes from a to b over a short stretch with the passage

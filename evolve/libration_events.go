@@ -64,9 +64,9 @@ func (l *carrier) occurred(t1 float64) []news {
 		tell := func(event, mode int, t float64, direction, detail string) {
 			list = append(list, news{i, mode, event, t, direction, "chain " + name + ": " + detail})
 		}
-		if c.lost {
+		if c.lost != nil {
 			if !c.toldLost {
-				tell(3, -1, t1, "", "a libration no longer oscillates about its centre; librations are not known from here on")
+				tell(3, -1, t1, "", "librations are not known from here on: "+c.lost.Error())
 			}
 			continue
 		}
@@ -105,10 +105,8 @@ type occurrence struct {
 
 // occurred carries the librations over an accepted step and returns all that
 // happened in it, in order of time.
-func (r *run) occurred(seg *ode.Segment) ([]occurrence, error) {
-	if err := r.carried.advance(seg); err != nil {
-		return nil, err
-	}
+func (r *run) occurred(seg *ode.Segment) []occurrence {
+	r.carried.advance(seg)
 	var list []occurrence
 	for _, o := range r.events.Locate(seg) {
 		list = append(list, occurrence{o, nil})
@@ -121,7 +119,7 @@ func (r *run) occurred(seg *ode.Segment) ([]occurrence, error) {
 		list = append(list, occurrence{ode.Occurrence{Event: at + n.chain*len(librationEvents) + n.event, T: n.t, Y: y}, &n})
 	}
 	slices.SortStableFunc(list, func(a, b occurrence) int { return cmp.Compare(a.T, b.T) })
-	return list, nil
+	return list
 }
 
 // event words an occurrence.

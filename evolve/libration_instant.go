@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"sort"
+
+	"tidekiln/orbit"
 )
 
 // begin and end are the knots at either end of the last step.
@@ -128,9 +130,9 @@ func (l *carrier) pack(t float64) []float64 {
 	list := []float64{}
 	for i := range l.chains {
 		c := &l.chains[i]
-		list = append(list, c.first, number(c.toldFold), number(c.lost))
+		list = append(list, c.first, number(c.toldFold), number(c.lost != nil))
 		for k := range c.toldWide {
-			if c.lost {
+			if c.lost != nil {
 				list = append(list, 0, 0, 0)
 				continue
 			}
@@ -164,11 +166,13 @@ func (l *carrier) unpack(list []float64) error {
 		modes := k.modes.Modes
 		rows := list[perLibratingChain : perLibratingChain+perLibration*len(modes)]
 		c.first, c.toldFold, c.toldLost = list[0], list[1] != 0, list[2] != 0
-		c.lost = c.lost || c.toldLost
+		if c.toldLost {
+			c.lost = orbit.ErrUnstable
+		}
 		list = list[perLibratingChain+len(rows):]
 		for j := range modes {
 			row := rows[perLibration*j:]
-			if c.lost {
+			if c.lost != nil {
 				break
 			}
 			near := j

@@ -35,14 +35,14 @@ func (l *carrier) sample(t, myr float64, grid bool, out []librationSample, reson
 	for i := range l.chains {
 		c := &l.chains[i]
 		var now instant
-		if !c.lost {
+		if c.lost == nil {
 			now = c.at(t)
 		}
 		for k := range c.toldWide {
 			o := &out[next]
 			next++
 			o.t, o.grid = myr, grid
-			if c.lost {
+			if c.lost != nil {
 				nan := math.NaN()
 				o.frequency, o.real, o.widening, o.growth, o.width, o.angle, o.action = nan, nan, nan, nan, nan, "", nan
 				continue
@@ -60,7 +60,7 @@ func (l *carrier) sample(t, myr float64, grid bool, out []librationSample, reson
 			o := &resonances[pair]
 			pair++
 			switch {
-			case c.lost:
+			case c.lost != nil:
 				o.width = math.NaN()
 			case r == 0:
 				o.width = math.Max(now.total(0), now.total(1))
