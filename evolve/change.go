@@ -70,7 +70,8 @@ func (r *run) change(which []int) error {
 	if err := r.start(); err != nil {
 		return err
 	}
-	r.rec.follow(r.p, r.h.RunID)
+	r.carried.restart(r.p, r.t, r.y)
+	r.rec.follow(r.p, r.carried, r.h.RunID)
 	return nil
 }
 

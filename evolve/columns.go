@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"tidekiln/evolve/record"
+	"tidekiln/orbit"
 	"tidekiln/thermal"
 )
 
@@ -63,6 +64,24 @@ var resonancesTable = newTable("resonances", "one row a time and resonance", []s
 	text("commensurability", "ratio of the mean motions, (j+1):j", "", func(s *resonanceSample) string { return ratioName(s.j) }),
 	float("offset_deg_per_day", "deg/d", "(j+1) n_outer − j n_inner", "", func(s *resonanceSample) float64 { return s.offset / degreePerDay }),
 	turn("angle_deg", "resonance angle ψ_r − ψ_1 between this pair and the chain's first (the Laplace angle of a chain of three)", "the first pair of a chain", func(s *resonanceSample) float64 { return s.angle / degree }),
+	float("half_width_deg", "deg", "half-width of the libration of this angle, all modes in step, at most 180; for a chain's first pair that of its angle to the pericentre of either member, the wider", noLibration, func(s *resonanceSample) float64 { return s.width / degree }),
+)
+
+const noLibration = "the libration centre has become unstable"
+
+var librationsTable = newTable("librations", "one row a time and libration of a chain", []string{"run_id", "time_Myr", "chain", "mode"},
+	text("run_id", "identity of the history", "", func(s *librationSample) string { return s.runID }),
+	rough("time_Myr", "Myr", "time since the start of the history", "", func(s *librationSample) float64 { return s.t }),
+	truth("on_grid", "a row of the asked cadence, not an extra one", func(s *librationSample) bool { return s.grid }),
+	text("chain", "name of the chain", "", func(s *librationSample) string { return s.chain }),
+	whole("mode", "number of the libration, by frequency at the start, fastest first; kept through the history", func(s *librationSample) int64 { return int64(s.mode) }),
+	float("period_yr", "yr", "period of the libration", noLibration, func(s *librationSample) float64 { return 2 * math.Pi / s.frequency / orbit.Year }),
+	rough("eigenvalue_real_per_Myr", "1/Myr", "real part of the eigenvalue, negative where tides damp; the drift of the centre comes on top of it", noLibration, func(s *librationSample) float64 { return s.real * Megayear }),
+	rough("width_growth_per_Myr", "1/Myr", "growth rate of the half-width, drift of the centre included", "the start, or "+noLibration, func(s *librationSample) float64 { return s.widening * Megayear }),
+	rough("action_growth_per_Myr", "1/Myr", "growth rate of the action, drift of the centre included: a positive one is overstable", "the start, or "+noLibration, func(s *librationSample) float64 { return s.growth * Megayear }),
+	float("half_width_deg", "deg", "half-width of the libration in the angle it shows in most, to first order, at most 180", noLibration, func(s *librationSample) float64 { return s.width / degree }),
+	text("angle", "the angle it shows in most: that of a resonance to the chain's first, or of the first resonance to a pericentre", noLibration, func(s *librationSample) string { return s.angle }),
+	rough("action_J_s", "J s", "action of the libration, the area it encloses in phase space over 2π", noLibration, func(s *librationSample) float64 { return s.action }),
 )
 
 const noTorque = "no orbiter raises a tide in the central body"
@@ -71,7 +90,7 @@ var systemTable = newTable("system", "one row a time: the ledger of energy and a
 	text("run_id", "identity of the history", "", func(s *systemSample) string { return s.runID }),
 	rough("time_Myr", "Myr", "time since the start of the history", "", func(s *systemSample) float64 { return s.t }),
 	truth("on_grid", "a row of the asked cadence, not an extra one", func(s *systemSample) bool { return s.grid }),
-	text("regime", "adiabatic: librations are averaged out", "", func(s *systemSample) string { return s.regime }),
+	text("regime", "adiabatic: librations are stepped over and carried beside the state", "", func(s *systemSample) string { return s.regime }),
 	float("orbital_energy_J", "J", "the Hamiltonian of all orbits, resonances and oblateness included", "", func(s *systemSample) float64 { return s.orbital }),
 	float("internal_energy_J", "J", "internal energy of all bodies with a thermal state, from an arbitrary zero", "no body has a thermal state", func(s *systemSample) float64 { return when(s.hasThermalState, s.internal) }),
 	float("tidal_heat_J", "J", "tidal heat made in all orbiters since the start", "no orbiter has an interior", func(s *systemSample) float64 { return when(s.hasInterior, s.heat) }),
@@ -145,6 +164,7 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	whole("decompositions", "LU decompositions", func(s *runRow) int64 { return int64(s.Stats.Decompositions) }),
 	list("end_state", "", "state of the integration at the end, SI, to continue from", "", func(s *runRow) []float64 { return s.endState }),
 	list("end_ledger", "", "quadratures at the end, SI, to continue from", "", func(s *runRow) []float64 { return s.endLedger }),
+	list("end_librations", "", "librations at the end, SI, to continue from: of each chain the first least squared frequency and two marks, of each mode frequency, half the logarithm of the action and a mark", "", func(s *runRow) []float64 { return s.endLibrations }),
 	list("end_changes", "", "places in the scenario of the changes already made, in their order", "", func(s *runRow) []float64 { return s.endChanges }),
 )
 
@@ -160,7 +180,7 @@ var attemptsTable = newTable("attempts", "one row an attempt: what may differ be
 // runs/ comes last, so what has a row there is whole.
 func Tables() []*record.Table {
 	return []*record.Table{
-		&bodiesTable.Table, &resonancesTable.Table, &systemTable.Table, &eventsTable.Table,
+		&bodiesTable.Table, &resonancesTable.Table, &librationsTable.Table, &systemTable.Table, &eventsTable.Table,
 		&outcomesTable.Table, &attemptsTable.Table, &runsTable.Table,
 	}
 }

@@ -75,16 +75,16 @@ func (r *run) orbits(lost bool) string {
 }
 
 // reasonOf words the event that ended a history.
-func reasonOf(w *watched) string {
-	s := w.Name
-	if w.body != "" {
-		s += ": " + w.body
+func reasonOf(e Event) string {
+	s := e.Name
+	if e.Body != "" {
+		s += ": " + e.Body
 	}
-	if w.other != "" {
-		s += " and " + w.other
+	if e.Other != "" {
+		s += " and " + e.Other
 	}
-	if w.detail != "" {
-		s += ", " + w.detail
+	if e.Detail != "" {
+		s += ", " + e.Detail
 	}
 	return s
 }

@@ -28,14 +28,16 @@ type runRow struct {
 	Misfit                         float64
 	Stats                          ode.Stats
 	endState, endLedger            []float64
+	endLibrations                  []float64
 	endChanges                     []float64
 }
 
 // end is what a continued history takes up.
 type end struct {
-	state   []float64
-	ledger  *ledger
-	changes []int
+	state      []float64
+	ledger     *ledger
+	librations []float64
+	changes    []int
 }
 
 // pack lists the books: the stores at the start, what was imposed, the sums.
@@ -98,7 +100,7 @@ func (h *History) Write(w *record.Writer) error {
 	row := h.row()
 	runsTable.add(runs, &row)
 	meta := h.meta()
-	for _, rows := range []*record.Rows{h.rows["bodies"], h.rows["resonances"], h.rows["system"], events, outcomes, attempts, runs} {
+	for _, rows := range []*record.Rows{h.rows["bodies"], h.rows["resonances"], h.rows["librations"], h.rows["system"], events, outcomes, attempts, runs} {
 		if err := w.Write(rows, meta); err != nil {
 			return err
 		}
@@ -111,7 +113,7 @@ func (h *History) row() runRow {
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
 		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, Misfit: h.Misfit,
-		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endChanges: []float64{},
+		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {
 		row.endChanges = append(row.endChanges, float64(i))
@@ -129,12 +131,13 @@ type Stored struct {
 
 // Continuation is the end of a stored history.
 type Continuation struct {
-	RunID    string
-	Scenario string // TOML, resolved
-	Time     float64
-	state    []float64
-	ledger   *ledger
-	changes  []int
+	RunID      string
+	Scenario   string // TOML, resolved
+	Time       float64
+	state      []float64
+	ledger     *ledger
+	librations []float64
+	changes    []int
 }
 
 // Describe reads what a dataset says of its history.
@@ -192,7 +195,7 @@ func Load(dir string) (*Continuation, error) {
 		return nil, fmt.Errorf("%s was made with physics number %d, this program has %d: run its scenario again from the start (scenarios show %s)", dir, s.Physics, Physics, dir)
 	}
 	c := &Continuation{RunID: s.RunID, Scenario: s.Scenario, Time: s.End}
-	var errs [4]error
+	var errs [5]error
 	c.state, errs[0] = first(f.Lists("end_state"))
 	books, err := first(f.Lists("end_ledger"))
 	errs[1] = err
@@ -201,6 +204,7 @@ func Load(dir string) (*Continuation, error) {
 	if errs[1] == nil {
 		c.ledger, errs[3] = unpackLedger(books)
 	}
+	c.librations, errs[4] = first(f.Lists("end_librations"))
 	for _, v := range changes {
 		c.changes = append(c.changes, int(v))
 	}

@@ -9,6 +9,7 @@
 //
 // The regime is adiabatic: an L-stable method steps far over the librations of
 // a resonance and thereby keeps every chain on its slowly moving libration
-// centre. It damps a libration that a resolved integration would keep, so a
-// history says nothing of how wide an angle librates.
+// centre. The librations that a resolved integration would follow are carried
+// beside the state, each by its action: a history knows how wide every angle
+// librates, and whether that grows, though it follows none of them.
 package evolve

@@ -26,7 +26,8 @@ type Event struct {
 	Detail      string
 }
 
-// watched is an event the integrator looks for.
+// watched is an event the integrator looks for, or, without a Value, one of the
+// librations, which come last.
 type watched struct {
 	ode.Event
 	body, other string
@@ -75,6 +76,9 @@ func (p *System) watchlist(stop []scenarios.Trigger) []watched {
 	}
 	for i := range p.groups {
 		list = append(list, p.groups[i].leaving(p)...)
+	}
+	for i := range p.groups {
+		list = append(list, p.groups[i].librating()...)
 	}
 	for i := range list {
 		for _, s := range stop {

@@ -109,6 +109,7 @@ type run struct {
 	ledger  *ledger
 	rec     *recorder
 	track   *tracker
+	carried *carrier
 	pending []int // changes not made yet, by their place in the scenario
 	made    []int
 	seen    []observation
@@ -150,8 +151,15 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 	if err := r.start(); err != nil {
 		return nil, err
 	}
+	var sizes []float64
+	if o.From != nil {
+		sizes = o.From.librations
+	}
+	if r.carried, err = newCarrier(r.p, r.t, r.y, sizes); err != nil {
+		return nil, err
+	}
 	myr := r.t / Megayear
-	r.rec = newRecorder(r.p, r.ledger, newGrid(s.Run.Record.EveryMyr, myr), s.Run.Record.Change, r.h.RunID)
+	r.rec = newRecorder(r.p, r.carried, r.ledger, newGrid(s.Run.Record.EveryMyr, myr), s.Run.Record.Change, r.h.RunID)
 	r.track = newTracker(r.p)
 	if due := r.due(); len(due) > 0 {
 		if err := r.change(due); err != nil {
@@ -180,9 +188,11 @@ func (r *run) start() error {
 	copy(r.y, r.integ.State())
 	r.settle(before)
 	r.watch = r.p.watchlist(r.h.Scenario.Run.Stop)
-	list := make([]ode.Event, len(r.watch))
+	var list []ode.Event
 	for i := range r.watch {
-		list[i] = r.watch[i].Event
+		if r.watch[i].Value != nil {
+			list = append(list, r.watch[i].Event)
+		}
 	}
 	r.events = ode.NewEvents(list)
 	r.events.Reset(r.t, r.y)
@@ -213,14 +223,13 @@ func (r *run) advance() error {
 		return nil
 	}
 	end := seg.T1
-	var trigger *ode.Occurrence
+	var trigger *occurrence
 	fired := -1
-	occurred := r.events.Locate(seg)
+	occurred := r.occurred(seg)
 	for i := range occurred {
 		o := &occurred[i]
 		w := &r.watch[o.Event]
-		e := w.event(r.h.RunID, *o)
-		r.h.Events = append(r.h.Events, e)
+		r.h.Events = append(r.h.Events, r.event(o))
 		if w.ends {
 			trigger, end = o, o.T
 			break
@@ -243,8 +252,7 @@ func (r *run) advance() error {
 		r.add(q)
 		copy(r.y, trigger.Y)
 		if fired < 0 {
-			w := &r.watch[trigger.Event]
-			r.stop(Ended, reasonOf(w))
+			r.stop(Ended, reasonOf(r.h.Events[len(r.h.Events)-1]))
 			return nil
 		}
 		return r.change([]int{fired})
@@ -317,10 +325,11 @@ func (r *run) finish() {
 	h.Closure.Energy, h.Closure.Momentum = c.energy, c.momentum
 	bound := math.Max(closureFactor*h.Scenario.Run.Tolerance, rounding)
 	h.Suspect = c.energy > bound || c.momentum > bound
-	h.end = end{state: r.y, ledger: r.ledger, changes: r.made}
+	h.end = end{state: r.y, ledger: r.ledger, changes: r.made, librations: r.carried.pack(r.t)}
 	r.conclude()
 	h.Cautions = r.cautions()
 	h.rows["bodies"], h.rows["resonances"], h.rows["system"] = r.rec.bodies, r.rec.resonances, r.rec.system
+	h.rows["librations"] = r.rec.librations
 }
 
 // spanMyr is the end of the span as it is written: the multiple of the cadence

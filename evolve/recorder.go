@@ -23,7 +23,7 @@ type recorder struct {
 	pending []candidate
 	y, q    []float64
 
-	bodies, resonances, system *record.Rows
+	bodies, resonances, librations, system *record.Rows
 }
 
 // candidate is a possible row.
@@ -33,21 +33,23 @@ type candidate struct {
 	grid       bool
 	bodies     []bodySample
 	resonances []resonanceSample
+	librations []librationSample
 	system     systemSample
 }
 
-func newRecorder(p *System, l *ledger, g *grid, change float64, runID string) *recorder {
+func newRecorder(p *System, carried *carrier, l *ledger, g *grid, change float64, runID string) *recorder {
 	r := &recorder{
 		ledger: l, grid: g, change: change,
 		bodies: record.NewRows(&bodiesTable.Table), resonances: record.NewRows(&resonancesTable.Table), system: record.NewRows(&systemTable.Table),
+		librations: record.NewRows(&librationsTable.Table),
 	}
-	r.follow(p, runID)
+	r.follow(p, carried, runID)
 	return r
 }
 
 // follow takes up a system, at the start and after a change of the rules.
-func (r *recorder) follow(p *System, runID string) {
-	r.sampler = newSampler(p, runID)
+func (r *recorder) follow(p *System, carried *carrier, runID string) {
+	r.sampler = newSampler(p, carried, runID)
 	r.y, r.q = make([]float64, p.dim), make([]float64, p.NumQuadratures())
 	r.turning = nil
 	for range r.sampler.bodies {
@@ -55,6 +57,9 @@ func (r *recorder) follow(p *System, runID string) {
 	}
 	for range r.sampler.resonances {
 		r.turning = append(r.turning, resonancesTable.turning()...)
+	}
+	for range r.sampler.librations {
+		r.turning = append(r.turning, librationsTable.turning()...)
 	}
 	r.turning = append(r.turning, systemTable.turning()...)
 	if r.peak == nil {
@@ -160,16 +165,19 @@ func (r *recorder) at(seg *ode.Segment, t, myr float64, sums []float64) candidat
 // written at once and the copies are not needed.
 func (r *recorder) snapshot() candidate {
 	s := r.sampler
-	c := candidate{t: s.system.t, grid: s.system.grid, bodies: s.bodies, resonances: s.resonances, system: s.system}
+	c := candidate{t: s.system.t, grid: s.system.grid, bodies: s.bodies, resonances: s.resonances, librations: s.librations, system: s.system}
 	if r.change <= 0 {
 		return c
 	}
-	c.bodies, c.resonances = slices.Clone(s.bodies), slices.Clone(s.resonances)
+	c.bodies, c.resonances, c.librations = slices.Clone(s.bodies), slices.Clone(s.resonances), slices.Clone(s.librations)
 	for i := range c.bodies {
 		c.values = bodiesTable.smooth(c.values, &c.bodies[i])
 	}
 	for i := range c.resonances {
 		c.values = resonancesTable.smooth(c.values, &c.resonances[i])
+	}
+	for i := range c.librations {
+		c.values = librationsTable.smooth(c.values, &c.librations[i])
 	}
 	c.values = systemTable.smooth(c.values, &c.system)
 	return c
@@ -240,6 +248,9 @@ func (r *recorder) write(c *candidate) {
 	}
 	for i := range c.resonances {
 		resonancesTable.add(r.resonances, &c.resonances[i])
+	}
+	for i := range c.librations {
+		librationsTable.add(r.librations, &c.librations[i])
 	}
 	systemTable.add(r.system, &c.system)
 }

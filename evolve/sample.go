@@ -45,6 +45,7 @@ type resonanceSample struct {
 	j                   int
 	offset              float64
 	angle               float64 // NaN for a chain's first pair
+	width               float64 // half-width of its libration, rad; NaN if unknown
 }
 
 // systemSample is the ledger at one time, SI.
@@ -64,14 +65,16 @@ type systemSample struct {
 // sampler turns states into samples.
 type sampler struct {
 	p          *System
+	carried    *carrier
 	dy, q      []float64
 	bodies     []bodySample
 	resonances []resonanceSample
+	librations []librationSample
 	system     systemSample
 }
 
-func newSampler(p *System, runID string) *sampler {
-	s := &sampler{p: p, dy: make([]float64, p.dim), q: make([]float64, p.NumQuadratures()), bodies: make([]bodySample, len(p.bodies))}
+func newSampler(p *System, carried *carrier, runID string) *sampler {
+	s := &sampler{p: p, carried: carried, librations: carried.samples(runID), dy: make([]float64, p.dim), q: make([]float64, p.NumQuadratures()), bodies: make([]bodySample, len(p.bodies))}
 	for i := range s.bodies {
 		s.bodies[i].runID = runID
 		s.bodies[i].name = p.bodies[i].name
@@ -139,6 +142,7 @@ func (s *sampler) take(t float64, y []float64, b books, sums []float64, myr floa
 			}
 		}
 	}
+	s.carried.sample(t, myr, grid, s.librations, s.resonances)
 	o := &s.system
 	at(&o.moment)
 	o.orbital, o.internal, _ = p.stores(t, y)

@@ -2,6 +2,7 @@ package scenarios
 
 import (
 	"fmt"
+	"math"
 	"regexp"
 	"strconv"
 
@@ -15,9 +16,11 @@ var chainKeys = []key.Key{
 		Meaning: `first-order resonance of each pair of neighbours, one fewer than members: ["2:1", "3:2"]`},
 	{Name: "offset", Kind: key.Quantity, Unit: "deg/day", Fixed: true,
 		Meaning: "(j+1) n_outer − j n_inner, common to the chain, not 0; it fixes the outer orbits and the forced eccentricities"},
+	{Name: "libration", Kind: key.Quantity, Unit: "deg", Default: 0.01 * math.Pi / 180, Range: key.From(0, math.Pi/2), Fixed: true,
+		Meaning: "half-width at the start of each libration in the angle it shows in most; what tides and migration make of it is carried along"},
 }
 
-var chainLater = []string{"state", "libration"}
+var chainLater = []string{"state"}
 
 // longestChain bounds the members: a chain of N has 2^(N−2) candidate centres.
 const longestChain = 10
@@ -34,6 +37,7 @@ func (r *reader) chains(n *node, top *scope) []Chain {
 		v, _ := r.values(child, &scope{at: at, keys: chainKeys, later: chainLater, outer: top})
 		c := Chain{Name: name}
 		c.Offset, _ = v.Map["offset"].(float64)
+		c.Libration, _ = v.Map["libration"].(float64)
 		if v.Map["offset"] != nil && c.Offset == 0 {
 			r.report(at.with("offset"), "is 0", "at exact commensurability the forced eccentricities diverge; give a negative offset, such as \"-0.5 deg/day\"")
 		}
@@ -137,6 +141,6 @@ func (c Chain) declared() key.Values {
 	return key.Values{Map: map[string]any{
 		"members": literal(joined(c.Members, quoteTOML)),
 		"ratios":  literal(joined(c.Ratios, func(j int) string { return quoteTOML(fmt.Sprintf("%d:%d", j+1, j)) })),
-		"offset":  c.Offset,
+		"offset":  c.Offset, "libration": c.Libration,
 	}}
 }

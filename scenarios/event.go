@@ -8,7 +8,15 @@ const (
 	EventOrbitsCross       = "orbits-cross"       // two neighbours' orbits meet; ends the history
 	EventResonanceLeft     = "resonance-left"     // a chain lost its lock; ends the history
 	EventEccentricityLimit = "eccentricity-limit" // nearly parabolic; ends the history
+
+	EventLibrationOverstable = "libration-overstable" // a growing libration is wide
+	EventFoldNear            = "fold-near"            // the locked state is about to cease to exist
+	EventLibrationsCross     = "librations-cross"     // two modes have shared their actions
+	EventCentreUnstable      = "centre-unstable"      // a fast eigenvalue is real
 )
 
 // eventNames are the names a trigger may give.
-var eventNames = append([]string{EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventEccentricityLimit}, thermal.EventNames()...)
+var eventNames = append([]string{
+	EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventEccentricityLimit,
+	EventLibrationOverstable, EventFoldNear, EventLibrationsCross, EventCentreUnstable,
+}, thermal.EventNames()...)

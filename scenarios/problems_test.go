@@ -199,8 +199,10 @@ base.toml:42: chain.outer.ratios[1]: "3:1" is not first order
   hint: list members from the innermost outward, without another orbit between them`},
 	{"offset without angle", `offset = "-0.70 deg/day"`, `offset = "-0.70 /day"`, `base.toml:39: chain.inner.offset: "-0.70 /day" is a rate, but an angular rate is needed
   hint: write it in deg/day or another unit of that dimension`},
-	{"libration", `ratios = ["2:1"]`, "ratios = [\"2:1\"]\nlibration = \"1 deg\"", `base.toml:39: chain.inner.libration: is not available in this version
+	{"state", `ratios = ["2:1"]`, "ratios = [\"2:1\"]\nstate = \"locked\"", `base.toml:39: chain.inner.state: is not available in this version
   hint: remove it`},
+	{"wide libration", `ratios = ["2:1"]`, "ratios = [\"2:1\"]\nlibration = \"120 deg\"", `base.toml:39: chain.inner.libration: "120 deg" is out of range
+  hint: it must be at least 0 deg and below 90 deg`},
 	{"not neighbours", `period = "12 d"`, `period = "2.7 d"`, `base.toml:37: chain.inner.members: Cinder and Brine are not neighbours
   hint: list members from the innermost outward, without another orbit between them`},
 	{"crossing", `eccentricity = 0.01`, `eccentricity = 0.7`, `base.toml:34: orbiter.Tern.period: its orbit crosses that of Brine: pericentre 428193 km, apocentre of Brine 667046 km

@@ -203,3 +203,22 @@ func TestOpen(t *testing.T) {
 		}
 	}
 }
+
+// A libration that is not given is 0.01 deg, the same case to the bit as one
+// that says so; any other is another case, and 0 is allowed.
+func TestLibrationOfAChain(t *testing.T) {
+	var ids []string
+	for _, text := range []string{"", `libration = "0.01 deg"`, `libration = "0 deg"`} {
+		s, err := Read("x.toml", []byte(strings.Replace(base, `ratios = ["2:1"]`, "ratios = [\"2:1\"]\n"+text, 1)))
+		if err != nil {
+			t.Fatal(err)
+		}
+		ids = append(ids, s.ID())
+		if want := 0.01 * math.Pi / 180; len(ids) < 3 && s.Chains[0].Libration != want {
+			t.Errorf("%q gives %v rad, want %v", text, s.Chains[0].Libration, want)
+		}
+	}
+	if ids[0] != ids[1] || ids[0] == ids[2] {
+		t.Errorf("fingerprints %v, want the first two equal and the third another", ids)
+	}
+}

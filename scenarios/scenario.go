@@ -63,10 +63,11 @@ type Orbiter struct {
 // Chain is a set of neighbours, ordered outward, locked in first-order
 // resonances: Ratios[r] = j for (j+1):j between Members[r] and Members[r+1].
 type Chain struct {
-	Name    string
-	Members []string
-	Ratios  []int
-	Offset  float64 // (j+1) n_outer − j n_inner, common to the chain, rad/s
+	Name      string
+	Members   []string
+	Ratios    []int
+	Offset    float64 // (j+1) n_outer − j n_inner, common to the chain, rad/s
+	Libration float64 // half-width of each libration at the start, in its largest angle, rad
 }
 
 // Change sets keys during the history, at a time or when an event happens.

@@ -183,15 +183,3 @@ func TestEventsPassedDoNotOccurAgain(t *testing.T) {
 		}
 	}
 }
-
-// circle is y₀ = cos t, y₁ = −sin t.
-type circle struct{}
-
-func (circle) Dim() int { return 2 }
-
-func (circle) Derivs(_ float64, y, dy []float64) { dy[0], dy[1] = y[1], -y[0] }
-
-func (c circle) Jacobian(t float64, y, dy, jac []float64) {
-	c.Derivs(t, y, dy)
-	copy(jac, []float64{0, 1, -1, 0})
-}
