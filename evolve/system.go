@@ -79,19 +79,15 @@ func NewSystem(s *scenarios.Scenario) (*System, []float64, error) {
 		index[o.Name] = i
 	}
 	for _, c := range s.Chains {
-		start := orbit.LockedStart{Primary: p.primary, Ratios: c.Ratios, Offset: c.Offset}
 		g := group{name: c.Name, at: len(y)}
+		var members []scenarios.Orbiter
 		for k, name := range c.Members {
 			i := index[name]
-			o := s.Orbiters[i]
-			start.Masses = append(start.Masses, o.Mass)
-			if k == 0 {
-				start.Period, start.SemimajorAxis = o.Period, o.SemimajorAxis
-			}
+			members = append(members, s.Orbiters[i])
 			p.bodies[i].group, p.bodies[i].member = len(p.groups), k
 			g.body = append(g.body, i)
 		}
-		chain, state, err := orbit.Lock(start)
+		chain, state, err := c.Start(p.primary, members)
 		if err != nil {
 			return nil, nil, fmt.Errorf("chain %s: %w", c.Name, err)
 		}
