@@ -16,38 +16,43 @@ const (
 // control chooses the length of steps: the predictive controller of Gustafsson
 // 1994, ACM Trans. Math. Softw. 20, 496, as in Hairer & Wanner II, IV.8.
 type control struct {
+	order  float64 // the estimate is of order h^order
 	h      float64 // next step wanted, 0: to be guessed
-	smooth bool    // hLast and errLast are of the step before
+	smooth bool    // hLast and eLast are of the step before
 	hLast  float64
 	eLast  float64
 
 	fails    int // attempts since the last accepted step
 	rejected bool
-	poor     int // consecutive failures of the iteration
-	good     int // consecutive fast contractions
 }
 
-func (c *control) restart(first float64) { *c = control{h: first} }
+// root is the factor of h that err tolerances stand for.
+func (c *control) root(err float64) float64 { return math.Pow(err, 1/c.order) }
+
+// factor returns what an error of err tolerances allows to multiply the step by.
+func (c *control) factor(err, safe float64) float64 {
+	return min(maxGrowth, max(maxShrink, safe/c.root(err)))
+}
 
 // propose returns the next step: the wanted one, cut to end on tEnd or halved so
 // that the rest is not tiny; cut reports that.
-func (r *Radau) propose(tEnd float64) (h float64, cut bool) {
-	rest := tEnd - r.t
-	if fixed := r.opt.FixedStep; fixed > 0 {
+func (e *engine) propose(tEnd float64) (h float64, cut bool) {
+	rest := tEnd - e.t
+	if fixed := e.opt.FixedStep; fixed > 0 {
 		// Rounding of t may leave a step a little longer.
 		if rest <= fixed*(1+1e-9) {
 			return rest, true
 		}
 		return fixed, false
 	}
-	if r.control.h == 0 {
-		r.control.h = r.firstStep(rest)
+	if e.control.h == 0 {
+		e.control.h = e.firstStep(rest)
 	}
-	if r.opt.MaxStep > 0 {
-		r.control.h = min(r.control.h, r.opt.MaxStep)
+	if e.opt.MaxStep > 0 {
+		e.control.h = min(e.control.h, e.opt.MaxStep)
 	}
-	switch h = r.control.h; {
-	case rest <= h || rest <= 4*r.resolution():
+	switch h = e.control.h; {
+	case rest <= h || rest <= 4*e.resolution():
 		return rest, true
 	case rest < 2*h:
 		return rest / 2, true
@@ -57,106 +62,81 @@ func (r *Radau) propose(tEnd float64) (h float64, cut bool) {
 
 // firstStep guesses a step from the time y takes to change by itself, shortened
 // by the tolerance; odd components, which hardly matter, do not count.
-func (r *Radau) firstStep(rest float64) float64 {
-	slope := r.f
-	if r.filter != nil {
-		slope = r.filter.slow // f itself is rounding noise times the fast frequency
-	}
+func (e *engine) firstStep(rest float64) float64 {
+	slope := e.scheme.velocity()
 	var d0, d1 float64
-	for i, y := range r.y {
-		if r.opt.Odd != nil && r.opt.Odd[i] {
+	for i, y := range e.y {
+		if e.opt.Odd != nil && e.opt.Odd[i] {
 			continue
 		}
-		w := 1 / (r.opt.RTol*math.Abs(y) + r.opt.ATol[i])
+		w := 1 / (e.opt.RTol*math.Abs(y) + e.opt.ATol[i])
 		d0 += y * w * y * w
 		d1 += slope[i] * w * slope[i] * w
 	}
 	h := rest
 	if d1 > 0 {
-		shorter := 0.3 * math.Pow(r.opt.RTol, 1/float64(r.tab.s+1))
+		shorter := 0.3 * e.control.root(e.opt.RTol)
 		// A state of zeros moves by some tolerances.
 		h = min(rest, shorter*math.Sqrt(max(d0, 1)/d1))
 	}
-	return max(h, r.opt.MinStep)
+	return max(h, e.opt.MinStep)
 }
 
 // resolution is the shortest step that t can tell, a few units in its last
 // place.
-func (r *Radau) resolution() float64 { return 4 * 0x1p-52 * math.Abs(r.t) }
+func (e *engine) resolution() float64 { return 4 * 0x1p-52 * math.Abs(e.t) }
 
 // shrink answers a failed attempt of length h with a shorter step, or says that
 // none is left to try.
-func (r *Radau) shrink(h, factor float64, stop StopError) error {
-	c := &r.control
+func (e *engine) shrink(h, factor float64, stop StopError) error {
+	c := &e.control
 	c.fails++
 	c.h = h * factor
-	if c.h < r.opt.MinStep && h > r.opt.MinStep {
-		c.h = r.opt.MinStep
+	if c.h < e.opt.MinStep && h > e.opt.MinStep {
+		c.h = e.opt.MinStep
 	}
-	if c.h >= r.opt.MinStep && c.h > r.resolution() && c.fails <= maxFails && r.opt.FixedStep == 0 {
+	if c.h >= e.opt.MinStep && c.h > e.resolution() && c.fails <= maxFails && e.opt.FixedStep == 0 {
 		return nil
 	}
-	stop.T, stop.H = r.t, c.h
-	if r.opt.FixedStep > 0 {
+	stop.T, stop.H = e.t, c.h
+	if e.opt.FixedStep > 0 {
 		stop.H = h
 	}
 	return &stop
 }
 
-// newtonFailed answers stages that did not converge: a Jacobian of this state
-// first, a shorter step then.
-func (r *Radau) newtonFailed(h float64) error {
-	c, nt := &r.control, &r.newton
-	r.stats.NewtonFailures++
-	c.rejected = true
-	nt.restart()
-	r.chooseStages(false)
-	if !r.jacHere && !nt.outside {
-		c.fails++
-		r.haveJac = false
-		return nil
-	}
-	stop := StopError{Reason: StepTooSmall, Component: nt.worst, Detail: "the Newton iteration does not converge"}
-	if nt.outside {
-		stop = StopError{Reason: NotFinite, Component: nt.worst, Detail: "at a stage of the step"}
-	}
-	return r.shrink(h, nt.shorten, stop)
+// noStages answers an attempt of length h whose stages could not be computed.
+func (e *engine) noStages(h, factor float64, stop StopError) error {
+	e.stats.NewtonFailures++
+	e.control.rejected = true
+	return e.shrink(h, factor, stop)
 }
 
-// factor returns what an error estimate of err tolerances allows to multiply the
-// step by, and more carefully after an expensive Newton iteration.
-func (r *Radau) factor(err float64) float64 {
-	most := float64(r.tab.iterations)
-	safe := safety * (1 + 2*most) / (float64(r.newton.iterations) + 2*most)
-	return min(maxGrowth, max(maxShrink, safe/r.root(err)))
+// refused answers a stage at which component i of f or of the state is not finite.
+func (e *engine) refused(h float64, i int) error {
+	return e.noStages(h, 0.25, StopError{Reason: NotFinite, Component: i, Detail: "at a stage of the step"})
 }
-
-func (r *Radau) root(err float64) float64 { return math.Pow(err, 1/float64(r.tab.s+1)) }
 
 // errorTooLarge answers an estimate of err ≥ 1 tolerances.
-func (r *Radau) errorTooLarge(h, err float64, worst int) error {
-	r.stats.Rejected++
-	r.control.rejected = true
-	factor := r.factor(err)
-	if r.stats.Steps == 0 || math.IsNaN(err) {
+func (e *engine) errorTooLarge(h, err, safe float64, worst int) error {
+	factor := e.control.factor(err, safe)
+	if e.stats.Steps == 0 || math.IsNaN(err) {
 		factor = 0.1
 	}
-	r.haveJac = r.jacHere
-	return r.shrink(h, factor, StopError{Reason: StepTooSmall, Component: worst,
+	return e.shrink(h, factor, StopError{Reason: StepTooSmall, Component: worst,
 		Detail: fmt.Sprintf("the error is %.2g tolerances", err)})
 }
 
-// accepted chooses the step after one of length h with an error of err
-// tolerances; cut says that it was shorter than wanted.
-func (r *Radau) accepted(h, err float64, cut bool) {
-	c := &r.control
-	r.chooseStages(true)
-	keepJac := r.newton.theta <= slowContraction
-	if r.opt.FixedStep == 0 {
+// lengthen chooses the step after one of length h with an error of err
+// tolerances; cut says that it was shorter than wanted, and hold that the same
+// length again is cheaper than another.
+func (e *engine) lengthen(h, err, safe float64, cut, hold bool) {
+	c := &e.control
+	if e.opt.FixedStep == 0 {
 		err = max(err, 1e-10)
-		factor := r.factor(err)
+		factor := c.factor(err, safe)
 		if c.smooth {
-			ratio := h / c.hLast * safety / r.root(err*err/c.eLast)
+			ratio := h / c.hLast * safety / c.root(err*err/c.eLast)
 			factor = min(factor, max(maxShrink, ratio))
 		}
 		wanted := h * factor
@@ -167,43 +147,13 @@ func (r *Radau) accepted(h, err float64, cut bool) {
 		case cut:
 			// The step cut had been found right by the one before.
 			c.h = max(c.h, wanted)
-		case keepJac && factor >= 1 && factor <= keepGrowth:
+		case hold && factor >= 1 && factor <= keepGrowth:
 			c.h = h
 		default:
 			c.h = wanted
 		}
-		c.h = max(c.h, r.opt.MinStep)
+		c.h = max(c.h, e.opt.MinStep)
 		c.smooth, c.hLast, c.eLast = true, h, max(1e-2, err)
 	}
 	c.fails, c.rejected = 0, false
-	r.haveJac = keepJac
-}
-
-// chooseStages follows the Newton iteration when the number of stages is free:
-// two failures running mean that steps of five stages are too long for it, and
-// steps of three are taken until the contraction is fast again.
-func (r *Radau) chooseStages(converged bool) {
-	if r.opt.Stages != 0 || r.opt.RTol > 1e-5 {
-		return
-	}
-	c := &r.control
-	if converged {
-		c.poor = 0
-	} else {
-		c.poor++
-	}
-	if converged && r.newton.theta < 0.01 {
-		c.good++
-	} else {
-		c.good = 0
-	}
-	switch {
-	case r.tab.s == 5 && c.poor >= 2:
-		r.tab = radau3()
-	case r.tab.s == 3 && c.good >= 4:
-		r.tab = radau5()
-	default:
-		return
-	}
-	c.poor, c.good, c.smooth = 0, 0, false
 }

@@ -48,20 +48,18 @@ func (e *Events) Reset(t float64, y []float64) {
 
 // Locate returns the occurrences in a segment, which must follow that of the last
 // call or start at the state of Reset, in order of time. Changes of sign are seen
-// at the stages of the step (3 or 5) and located on the collocation polynomial;
-// a value that only touches 0 is no occurrence. The slice is valid until the next
+// at the nodes of the step (Radau: its 3 or 5 stages, Rosenbrock: 4, DOP853: 7) and
+// located on its polynomial; a value that only touches 0 is no occurrence. The slice is valid until the next
 // call.
 func (e *Events) Locate(seg *Segment) []Occurrence {
 	e.found = e.found[:0]
 	before := 0.0
-	for j := range seg.tab.s {
-		theta, t := seg.tab.c[j], seg.T0+seg.tab.c[j]*seg.h
-		if j == seg.tab.s-1 {
+	for j := range seg.form.s {
+		theta, t := seg.form.c[j], seg.T0+seg.form.c[j]*seg.h
+		if j == seg.form.s-1 {
 			t = seg.T1
-			copy(e.y, seg.y1)
-		} else {
-			seg.atStage(j, e.y)
 		}
+		seg.atNode(j, e.y)
 		for i, ev := range e.list {
 			v := ev.Value(t, e.y)
 			to := sign(v)
@@ -72,11 +70,7 @@ func (e *Events) Locate(seg *Segment) []Occurrence {
 			if e.side[i] == -to && ev.Direction != -int(to) {
 				e.add(seg, i, before, theta, e.last[i], v)
 				// The point is needed again by the events that follow.
-				if j == seg.tab.s-1 {
-					copy(e.y, seg.y1)
-				} else {
-					seg.atStage(j, e.y)
-				}
+				seg.atNode(j, e.y)
 			}
 			e.side[i], e.last[i] = to, v
 		}

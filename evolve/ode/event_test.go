@@ -15,7 +15,7 @@ func (p circle) Jacobian(t float64, y, dy, j []float64) {
 	copy(j, []float64{0, 1, -1, 0})
 }
 
-func locate(t *testing.T, r *Radau, end float64, list []Event) []Occurrence {
+func locate(t *testing.T, r Integrator, end float64, list []Event) []Occurrence {
 	t.Helper()
 	e := NewEvents(list)
 	e.Reset(r.T(), r.State())

@@ -64,17 +64,17 @@ type crossing struct {
 	up    bool
 }
 
-// firstCrossing looks for the first change of side seen at the stages of the
-// step tried and locates it on the collocation polynomial.
-func (r *Radau) firstCrossing() crossing {
-	k, seg := &r.kinks, r.next
+// firstCrossing looks for the first change of side seen at the nodes of the step
+// tried and locates it on the polynomial.
+func (e *engine) firstCrossing() crossing {
+	k, seg := &e.kinks, e.next
 	copy(k.ready, k.armed)
 	first := crossing{kink: -1}
 	before := 0.0
-	for j := -1; j < seg.tab.s; j++ {
-		theta := seg.atStage(j, r.point)
+	for j := -1; j < seg.form.s; j++ {
+		theta := seg.atNode(j, e.point)
 		for i := range k.side {
-			g := k.sys.Kink(i, seg.T0+theta*seg.h, r.point)
+			g := k.sys.Kink(i, seg.T0+theta*seg.h, e.point)
 			to := sign(g)
 			at := -1.0
 			switch {
@@ -91,8 +91,8 @@ func (r *Radau) firstCrossing() crossing {
 			case to != k.side[i]:
 				if at = 0; j >= 0 {
 					at = root(func(x float64) float64 {
-						seg.at(x, r.err)
-						return k.sys.Kink(i, seg.T0+x*seg.h, r.err)
+						seg.at(x, e.err)
+						return k.sys.Kink(i, seg.T0+x*seg.h, e.err)
 					}, before, theta, k.last[i], g)
 				}
 			}
@@ -112,80 +112,80 @@ func (r *Radau) firstCrossing() crossing {
 // landOnKink shortens the step tried, of length h, to end on the first kink in
 // it. With again the step is to be tried anew: a branch changed at its start, or
 // the shorter one failed.
-func (r *Radau) landOnKink(h, tEnd float64) (met crossing, again bool, err error) {
-	if len(r.kinks.side) == 0 {
+func (e *engine) landOnKink(h, tEnd float64) (met crossing, again bool, err error) {
+	if len(e.kinks.side) == 0 {
 		return crossing{kink: -1}, false, nil
 	}
-	met = r.firstCrossing()
+	met = e.firstCrossing()
 	if met.kink < 0 {
 		return met, false, nil
 	}
-	if h*met.theta <= max(1e-14*math.Abs(r.t), r.opt.MinStep, 1e-12*h) {
-		return met, true, r.turn(met, h)
+	if h*met.theta <= max(1e-14*math.Abs(e.t), e.opt.MinStep, 1e-12*h) {
+		return met, true, e.turn(met, h)
 	}
-	k, seg := &r.kinks, r.next
+	k, seg := &e.kinks, e.next
 	target := h * met.theta
 	value := func(theta float64) float64 {
-		seg.at(theta, r.point)
-		return k.sys.Kink(met.kink, seg.T0+theta*seg.h, r.point)
+		seg.at(theta, e.point)
+		return k.sys.Kink(met.kink, seg.T0+theta*seg.h, e.point)
 	}
 	// The shorter step ends off the kink by the error of the long step's
 	// polynomial; each repetition takes a secant of its own.
 	for range 5 {
-		target = min(target, tEnd-r.t)
-		if done, err := r.attempt(target); !done {
+		target = min(target, tEnd-e.t)
+		if done, err := e.try(target); !done {
 			return met, true, err
 		}
 		const d = 1e-3
 		g := value(1)
 		move := -d * g / (g - value(1-d))
-		if !(math.Abs(move) < 0.1) || math.Abs(move) <= 1e-12+r.resolution()/target {
+		if !(math.Abs(move) < 0.1) || math.Abs(move) <= 1e-12+e.resolution()/target {
 			break
 		}
 		target *= 1 + move
 	}
-	if seg.T1 = r.t + seg.h; seg.h == tEnd-r.t {
+	if seg.T1 = e.t + seg.h; seg.h == tEnd-e.t {
 		seg.T1 = tEnd
 	}
 	return met, false, nil
 }
 
 // cross takes the branch beyond a kink the state is on and starts afresh there.
-func (r *Radau) cross(c crossing) error {
-	k := &r.kinks
-	r.stats.KinksCrossed++
+func (e *engine) cross(c crossing) error {
+	k := &e.kinks
+	e.stats.KinksCrossed++
 	k.sys.Cross(c.kink, c.up)
 	k.side[c.kink] = -1
 	if c.up {
 		k.side[c.kink] = 1
 	}
-	r.forget()
-	err := r.project()
+	e.startAfresh()
+	err := e.scheme.project()
 	k.armed[c.kink] = false
 	// Projection and landing leave it a little off zero on either side.
-	k.noise[c.kink] = 4 * math.Abs(k.sys.Kink(c.kink, r.t, r.y))
+	k.noise[c.kink] = 4 * math.Abs(k.sys.Kink(c.kink, e.t, e.y))
 	return err
 }
 
 // turn crosses a kink at the start of the step tried, of length h. If both
 // branches lead back to the kink, it is of no consequence where f is continuous,
 // and the step is taken on either; where f jumps there is no solution to follow.
-func (r *Radau) turn(c crossing, h float64) error {
-	k := &r.kinks
+func (e *engine) turn(c crossing, h float64) error {
+	k := &e.kinks
 	k.turns[c.kink]++
 	if k.turns[c.kink] > 1 {
 		k.sys.Cross(c.kink, c.up)
-		r.derivs(r.t, r.y, r.err)
+		e.derivs(e.t, e.y, e.err)
 		jump, worst := 0.0, 0
-		for i, f := range r.f {
-			if d := h * math.Abs(f-r.err[i]) * r.inv[i]; d > jump {
+		for i, f := range e.f {
+			if d := h * math.Abs(f-e.err[i]) * e.inv[i]; d > jump {
 				jump, worst = d, i
 			}
 		}
 		if jump > 1 {
-			return &StopError{Reason: StepTooSmall, T: r.t, H: h, Component: worst,
+			return &StopError{Reason: StepTooSmall, T: e.t, H: h, Component: worst,
 				Detail: fmt.Sprintf("f jumps at kink %d and leads back to it from both sides", c.kink)}
 		}
 	}
-	return r.cross(c)
+	return e.cross(c)
 }

@@ -53,12 +53,12 @@ func (r *Radau) predict(h float64) {
 	old := r.seg
 	for i := range s {
 		var b [maxStages]float64
-		old.tab.basis(1+r.tab.c[i]*h/old.h, b[:])
-		b[old.tab.s-1]-- // relative to the end of the old step
+		old.form.basis(1+r.tab.c[i]*h/old.h, b[:])
+		b[old.form.s-1]-- // relative to the end of the old step
 		zi := z[i*n : (i+1)*n]
 		clear(zi)
-		for j := range old.tab.s {
-			for k, v := range old.stage(j) {
+		for j := range old.form.s {
+			for k, v := range old.term(j) {
 				zi[k] += b[j] * v
 			}
 		}

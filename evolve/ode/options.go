@@ -5,31 +5,32 @@ import (
 	"math"
 )
 
-// Options of a Radau integrator. RTol and ATol are required; every other zero
+// Options of an integrator. RTol and ATol are required; every other zero
 // value is a sensible default.
 type Options struct {
 	RTol float64   // relative tolerance, 1e-14…0.1
 	ATol []float64 // absolute tolerance of each component, > 0: |err_i| ≤ RTol·|y_i| + ATol_i in the root mean square
 
+	// Not for DOP853, which follows an oscillation.
 	Odd     []bool  // components whose tolerance is multiplied by max(1, OddTime/h); nil: none
 	OddTime float64 // > 0 if Odd has members
 
-	// Fast is the block projected onto the slow manifold; nil: no projection. It
-	// must include the slow variables that move the centre of the oscillation, or
+	// Fast is the block projected onto the slow manifold; nil: no projection. Not
+	// for DOP853. It must include the slow variables that move the centre of the oscillation, or
 	// the state ends at rest instead of moving with it.
 	Fast           []bool
 	ProjectionStep float64 // h of the projection filter, much longer than the fast periods and much shorter than the slow times; > 0 if Fast has members
 
-	Stages int // 3, 5, or 0: 5, but 3 when RTol > 1e-5 and where the Newton iteration of 5 keeps failing
+	Stages int // of Radau: 3, 5, or 0: 5, but 3 when RTol > 1e-5 and where the Newton iteration of 5 keeps failing
 
 	FirstStep float64 // 0: guessed from y and f
 	MaxStep   float64 // 0: no limit
 	MinStep   float64 // a step that must be shorter stops the run, unless it ends on a kink or at tEnd; 0: the resolution of t
 	FixedStep float64 // > 0: every step has this length and there is no error control
-	MaxSteps  int     // attempted steps, accepted or not, counted since NewRadau; 0: no limit
+	MaxSteps  int     // attempted steps, accepted or not, counted since the integrator was made; 0: no limit
 }
 
-func (o *Options) check(n int) error {
+func (o *Options) check(n int, m Method) error {
 	if !(o.RTol >= 1e-14 && o.RTol <= 0.1) {
 		return fmt.Errorf("ode: RTol is %g, must lie in 1e-14…0.1", o.RTol)
 	}
@@ -48,6 +49,10 @@ func (o *Options) check(n int) error {
 		return err
 	}
 	switch {
+	case m == MethodDOP853 && (o.Odd != nil || o.Fast != nil):
+		return fmt.Errorf("ode: Odd and Fast are for stepping over an oscillation, which DOP853 follows; use Radau or Rosenbrock, or leave them out")
+	case m != MethodRadau && o.Stages != 0:
+		return fmt.Errorf("ode: Stages is %d, but the choice is Radau's only; leave it 0 with %v", o.Stages, m)
 	case o.Stages != 0 && o.Stages != 3 && o.Stages != 5:
 		return fmt.Errorf("ode: Stages is %d, must be 0, 3 or 5", o.Stages)
 	case o.Stages == 5 && o.RTol > 1e-4 && o.FixedStep == 0:

@@ -1,6 +1,7 @@
 package ode
 
 import (
+	"fmt"
 	"math"
 	"testing"
 )
@@ -24,6 +25,7 @@ func (spin) NumQuadratures() int { return 1 }
 func (spin) Integrands(t float64, y, q []float64) {
 	q[0] = (y[0]*y[0] + y[1]*y[1]) * y[1]
 }
+func (spin) integral(t float64) float64   { return math.Cos(t) - 1 }
 func (spin) exact(t float64, y []float64) { y[0], y[1] = math.Cos(t), -math.Sin(t) }
 
 // kpr is the problem of Kværnø, Prothero and Robinson (from memory; the solution
@@ -31,11 +33,14 @@ func (spin) exact(t float64, y []float64) { y[0], y[1] = math.Cos(t), -math.Sin(
 //
 //	[u' v'] = A [(u² − 3 − cos ωt)/2u, (v² − 5 − cos t)/2v] − [ω sin ωt/2u, sin t/2v]
 //
-// with u = √(3 + cos ωt), v = √(5 + cos t).
+// with u = √(3 + cos ωt), v = √(5 + cos t). Its quadrature is (u²)′.
 type kpr struct{ a, b, c, d, omega float64 }
 
-// stiff has eigenvalues near −1e4 and −1 of A.
-var stiffKPR = kpr{a: -1e4, b: 10, c: 1, d: -1, omega: 5}
+// stiffKPR has eigenvalues near −1e4 and −1 of A.
+var (
+	mildKPR  = kpr{a: -2, b: 0.1, c: 0.1, d: -1, omega: 5}
+	stiffKPR = kpr{a: -1e4, b: 10, c: 1, d: -1, omega: 5}
+)
 
 func (kpr) Dim() int { return 2 }
 func (p kpr) Derivs(t float64, y, dy []float64) {
@@ -55,6 +60,14 @@ func (p kpr) Jacobian(t float64, y, dy, j []float64) {
 func (p kpr) exact(t float64, y []float64) {
 	y[0], y[1] = math.Sqrt(3+math.Cos(p.omega*t)), math.Sqrt(5+math.Cos(t))
 }
+
+func (kpr) NumQuadratures() int { return 1 }
+func (p kpr) Integrands(t float64, y, q []float64) {
+	var dy [2]float64
+	p.Derivs(t, y, dy[:])
+	q[0] = 2 * y[0] * dy[0]
+}
+func (p kpr) integral(t float64) float64 { return math.Cos(p.omega*t) - 1 }
 
 // vanDerPol is y₁' = y₂, y₂' = ((1 − y₁²) y₂ − y₁)/ε.
 type vanDerPol struct{ eps float64 }
@@ -113,8 +126,44 @@ func mustRadau(t testing.TB, sys System, opt Options, t0 float64, y0 []float64) 
 	return r
 }
 
+// formula is a method with its choice of stages.
+type formula struct {
+	method Method
+	stages int // of Radau
+}
+
+func (f formula) String() string {
+	if f.method == MethodRadau {
+		return fmt.Sprintf("%v, %d stages", f.method, f.stages)
+	}
+	return f.method.String()
+}
+
+var (
+	radauThree = formula{MethodRadau, 3}
+	radauFive  = formula{MethodRadau, 5}
+	rodas      = formula{method: MethodRosenbrock}
+	dop        = formula{method: MethodDOP853}
+
+	formulas      = []formula{radauThree, radauFive, rodas, dop}
+	stiffFormulas = formulas[:3]
+)
+
+func (f formula) start(t testing.TB, sys System, opt Options, t0 float64, y0 []float64) Integrator {
+	t.Helper()
+	opt.Stages = f.stages
+	r, err := New(f.method, sys, opt)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := r.Start(t0, y0); err != nil {
+		t.Fatal(err)
+	}
+	return r
+}
+
 // run steps to t1, calling each if not nil with every segment.
-func run(t testing.TB, r *Radau, t1 float64, each func(*Segment)) {
+func run(t testing.TB, r Integrator, t1 float64, each func(*Segment)) {
 	t.Helper()
 	for r.T() < t1 {
 		seg, err := r.Step(t1)

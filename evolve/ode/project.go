@@ -35,49 +35,49 @@ func newProjector(fast []bool) *projector {
 // J of the block: R f is f without its oscillating part and −hR approaches J⁻¹ for
 // frequencies ≫ 1/h. It stops when a correction no longer gains on the one before.
 // The error left in the slow variables is of second order in the displacement.
-func (r *Radau) project() error {
-	p := r.filter
+func (im *implicit) project() error {
+	p := im.filter
 	if p == nil {
 		return nil
 	}
-	r.stats.Projections++
-	h, m := r.opt.ProjectionStep, len(p.index)
+	im.stats.Projections++
+	h, m := im.opt.ProjectionStep, len(p.index)
 	last := math.Inf(1)
 	for range projections {
-		r.haveJac = false
-		if err := r.linearise(); err != nil {
+		im.haveJac = false
+		if err := im.linearise(); err != nil {
 			return err
 		}
 		for a, i := range p.index {
 			for b, j := range p.index {
-				p.jac[a*m+b] = h * r.jac[i*r.n+j]
+				p.jac[a*m+b] = h * im.jac[i*im.n+j]
 			}
 		}
 		if !shiftReal(p.lu, 1, p.jac) {
-			return &StopError{Reason: Singular, T: r.t, H: h, Component: -1, Detail: "projection onto the slow manifold"}
+			return &StopError{Reason: Singular, T: im.t, H: h, Component: -1, Detail: "projection onto the slow manifold"}
 		}
-		copy(p.slow, r.f)
+		copy(p.slow, im.f)
 		for a, i := range p.index {
-			p.shift[a] = r.f[i]
+			p.shift[a] = im.f[i]
 		}
 		p.lu.solve(p.shift)
 		for a, i := range p.index {
 			p.slow[i] = p.shift[a]
-			p.shift[a] = r.f[i] - p.shift[a]
+			p.shift[a] = im.f[i] - p.shift[a]
 		}
 		p.lu.solve(p.shift)
 		size := 0.0
 		for a, i := range p.index {
-			v := h * p.shift[a] / (r.opt.RTol*math.Abs(r.y[i]) + r.opt.ATol[i])
+			v := h * p.shift[a] / (im.opt.RTol*math.Abs(im.y[i]) + im.opt.ATol[i])
 			size += v * v
 		}
 		if !(size < last) {
 			break
 		}
 		for a, i := range p.index {
-			r.y[i] += h * p.shift[a]
+			im.y[i] += h * p.shift[a]
 		}
-		r.haveF, r.haveJac, r.jacHere = false, false, false
+		im.haveF, im.haveJac, im.jacHere = false, false, false
 		if size > 0.01*last { // sums of squares: it gained less than a factor of ten
 			break
 		}

@@ -1,184 +1,60 @@
 package ode
 
-import (
-	"fmt"
-	"math"
-)
-
 // Radau integrates a System with the Radau IIA methods of 3 and 5 stages (Hairer &
 // Wanner, Solving Ordinary Differential Equations II, IV.8; Hairer & Wanner 1999,
 // J. Comput. Appl. Math. 111, 93).
 type Radau struct {
-	sys    System
-	quad   Quadratures // nil if sys has none
-	opt    Options
-	n      int
-	tab    *tableau
-	stats  Stats
-	kinks  kinks
-	filter *projector // nil without a fast block
-
-	started bool
-	t       float64
-	y       []float64
-	f, jac  []float64 // at (t, y) if haveF; jac maybe of an earlier step
-	haveF   bool
-	haveJac bool
-	jacHere bool // jac is of this (t, y)
-
-	seg, next *Segment // last accepted step, the one being tried
-	history   bool     // seg may start the Newton iteration
+	implicit
+	tab     *tableau
+	history bool // seg may start the Newton iteration
+	poor    int  // consecutive failures of the iteration
+	good    int  // consecutive fast contractions
 
 	// Decompositions of the Newton matrices, for the step luStep with luTab.
-	real   *lu[float64]
-	pairs  [maxStages / 2]*lu[complex128]
-	luStep float64
-	luTab  *tableau
+	real  *lu[float64]
+	pairs [maxStages / 2]*lu[complex128]
+	luTab *tableau
 
-	newton  newton
-	control control
-	err     []float64 // estimate, and scratch
-	inv     []float64 // reciprocal tolerances at the present step
-	point   []float64 // scratch state
-}
-
-// Stats counts the work since NewRadau.
-type Stats struct {
-	Steps          int // accepted
-	Rejected       int // by the error test
-	NewtonFailures int // attempts whose stages did not converge
-	Derivs         int
-	Jacobians      int
-	Decompositions int // of one real and (s − 1)/2 complex matrices
-	Projections    int
-	KinksCrossed   int
+	newton newton
 }
 
 // NewRadau prepares an integration; Start must follow. The integrals and kinks
 // of a sys that implements Quadratures or Piecewise are taken care of. An error
 // says which option does not make sense.
 func NewRadau(sys System, opt Options) (*Radau, error) {
-	n := sys.Dim()
-	if n <= 0 {
-		return nil, fmt.Errorf("ode: system has %d components, needs at least 1", n)
-	}
-	if err := opt.check(n); err != nil {
+	im, err := newImplicit(MethodRadau, sys, opt, maxStages, maxStages)
+	if err != nil {
 		return nil, err
 	}
-	r := &Radau{sys: sys, opt: opt, n: n}
-	numQuadratures := 0
-	if q, ok := sys.(Quadratures); ok {
-		r.quad, numQuadratures = q, q.NumQuadratures()
-	}
-	if p, ok := sys.(Piecewise); ok {
-		r.kinks = newKinks(p)
-	}
-	r.filter = newProjector(opt.Fast)
-	vector := func() []float64 { return make([]float64, n) }
-	r.y, r.f, r.jac = vector(), vector(), make([]float64, n*n)
-	r.err, r.inv, r.point = vector(), vector(), vector()
-	r.seg, r.next = newSegment(n, numQuadratures), newSegment(n, numQuadratures)
-	r.real = newRealLU(n)
+	r := &Radau{implicit: im}
+	r.scheme = r
+	r.real = newRealLU(r.n)
 	for k := range r.pairs {
-		r.pairs[k] = newComplexLU(n)
+		r.pairs[k] = newComplexLU(r.n)
 	}
-	r.newton = newNewton(n, opt.RTol)
+	r.newton = newNewton(r.n, opt.RTol)
 	return r, nil
 }
 
-// Start sets the state, chooses the branches of a Piecewise system there and
-// projects the state onto the slow manifold if Options.Fast is given. The y given
-// is not kept.
-func (r *Radau) Start(t float64, y []float64) error {
-	r.started = false
-	if len(y) != r.n {
-		return fmt.Errorf("ode: start state has %d values for %d components", len(y), r.n)
+func (r *Radau) begin() {
+	tab := radau5()
+	if r.opt.Stages == 3 || r.opt.Stages == 0 && r.opt.RTol > 1e-5 {
+		tab = radau3()
 	}
-	for i, v := range y {
-		if math.IsNaN(v) || math.IsInf(v, 0) {
-			return &StopError{Reason: NotFinite, T: t, Component: i, Detail: "start state"}
-		}
-	}
-	if math.IsNaN(t) || math.IsInf(t, 0) {
-		return &StopError{Reason: NotFinite, T: t, Component: -1, Detail: "start time"}
-	}
-	if r.tab = radau5(); r.opt.Stages == 3 || r.opt.Stages == 0 && r.opt.RTol > 1e-5 {
-		r.tab = radau3()
-	}
-	r.t = t
-	copy(r.y, y)
-	r.kinks.freeze(t, r.y)
-	r.forget()
-	r.control.restart(r.opt.FirstStep)
-	if err := r.project(); err != nil {
-		return err
-	}
-	r.started = true
-	return nil
+	r.use(tab)
 }
 
-// Restart continues from another state, after an event or an edit: the same as
-// Start, and Stats go on counting.
-func (r *Radau) Restart(t float64, y []float64) error { return r.Start(t, y) }
+func (r *Radau) use(tab *tableau) {
+	r.tab, r.control.order = tab, float64(tab.s+1)
+	r.poor, r.good, r.control.smooth = 0, 0, false
+}
 
-// forget drops all that holds only while f and the path are smooth.
 func (r *Radau) forget() {
-	r.haveF, r.haveJac, r.jacHere = false, false, false
-	r.history = false
+	r.haveJac, r.jacHere, r.history = false, false, false
 	r.newton.restart()
-	r.control.smooth = false
 }
 
-// T returns the time reached.
-func (r *Radau) T() float64 { return r.t }
-
-// State returns the state at T; it is not to be modified.
-func (r *Radau) State() []float64 { return r.y }
-
-// Stats returns the work done so far.
-func (r *Radau) Stats() Stats { return r.stats }
-
-func (r *Radau) derivs(t float64, y, dy []float64) {
-	r.stats.Derivs++
-	r.sys.Derivs(t, y, dy)
-}
-
-// linearise makes f and a Jacobian available at the state.
-func (r *Radau) linearise() error {
-	switch {
-	case !r.haveJac:
-		r.stats.Jacobians++
-		r.sys.Jacobian(r.t, r.y, r.f, r.jac)
-		r.haveJac, r.jacHere, r.luStep = true, true, 0
-		for k, v := range r.jac {
-			if math.IsNaN(v) || math.IsInf(v, 0) {
-				r.haveJac = false
-				return &StopError{Reason: NotFinite, T: r.t, H: r.control.h, Component: k / r.n,
-					Detail: fmt.Sprintf("derivative with respect to component %d", k%r.n)}
-			}
-		}
-	case !r.haveF:
-		r.derivs(r.t, r.y, r.f)
-	default:
-		return nil
-	}
-	r.haveF = true
-	if i := notFinite(r.f); i >= 0 {
-		r.haveF = false
-		return &StopError{Reason: NotFinite, T: r.t, H: r.control.h, Component: i, Detail: "f at an accepted state"}
-	}
-	return nil
-}
-
-// notFinite returns the index of the first NaN or infinity, or −1.
-func notFinite(v []float64) int {
-	for i, x := range v {
-		if math.IsNaN(x) || math.IsInf(x, 0) {
-			return i
-		}
-	}
-	return -1
-}
+func (r *Radau) prepare() error { return r.linearise() }
 
 // decompose prepares the Newton matrices of step h.
 func (r *Radau) decompose(h float64) bool {
@@ -200,35 +76,113 @@ func (r *Radau) decompose(h float64) bool {
 	return true
 }
 
-// setTolerances computes the reciprocal tolerances at the state for step h.
-func (r *Radau) setTolerances(h float64) {
-	odd := 1.0
-	if r.opt.OddTime > h {
-		odd = r.opt.OddTime / h
+func (r *Radau) attempt(h float64) (bool, error) {
+	if !r.decompose(h) {
+		return false, r.noStages(h, 0.5, StopError{Reason: Singular, Component: -1})
 	}
-	for i, y := range r.y {
-		r.inv[i] = 1 / (r.opt.RTol*math.Abs(y) + r.opt.ATol[i])
+	if !r.solveStages(h) {
+		return false, r.newtonFailed(h)
 	}
-	if odd > 1 {
-		for i, is := range r.opt.Odd {
-			if is {
-				r.inv[i] /= odd
-			}
-		}
+	s := r.next
+	s.begin(r.tab.form, r.t, h, r.y)
+	for i, z := range s.term(r.tab.s - 1) {
+		s.y1[i] = r.y[i] + z
 	}
+	return true, nil
 }
 
-// norm returns the root mean square of v over the tolerances and the component
-// that contributes most, or a component that is not finite.
-func norm(v, inv []float64) (rms float64, worst int) {
-	sum, big := 0.0, -1.0
-	for i, x := range v {
-		x *= inv[i]
-		x *= x
-		sum += x
-		if x > big || x != x {
-			big, worst = x, i
+// newtonFailed answers stages that did not converge: a Jacobian of this state
+// first, a shorter step then.
+func (r *Radau) newtonFailed(h float64) error {
+	nt := &r.newton
+	nt.restart()
+	r.chooseStages(false)
+	if !r.jacHere && !nt.outside {
+		r.stats.NewtonFailures++
+		r.control.fails++
+		r.control.rejected = true
+		r.haveJac = false
+		return nil
+	}
+	if nt.outside {
+		return r.refused(h, nt.worst)
+	}
+	return r.noStages(h, nt.shorten, StopError{Reason: StepTooSmall, Component: nt.worst, Detail: "the Newton iteration does not converge"})
+}
+
+// estimate returns the error of the step in tolerances and its worst component.
+// The difference to the embedded formula passes through (1 − hJ/γ)⁻¹, twice where
+// the step may be too long for one passage (Hairer & Wanner II, IV.8).
+func (r *Radau) estimate(h float64) (size float64, worst int) {
+	sum := r.newton.d[:r.n]
+	clear(sum)
+	for j := range r.tab.s {
+		e := r.tab.errWeights[j] / h
+		for k, v := range r.next.term(j) {
+			sum[k] += e * v
 		}
 	}
-	return math.Sqrt(sum / float64(len(v))), worst
+	for k, v := range sum {
+		r.err[k] = v + r.f[k]
+	}
+	r.real.solve(r.err)
+	size, worst = norm(r.err, r.inv)
+	if size < 1 || r.control.smooth && !r.control.rejected {
+		return size, worst
+	}
+	for k, v := range r.err {
+		r.point[k] = r.y[k] + v
+	}
+	r.derivs(r.t, r.point, r.err)
+	for k, v := range sum {
+		r.err[k] += v
+	}
+	r.real.solve(r.err)
+	if again, i := norm(r.err, r.inv); again < size {
+		size, worst = again, i
+	}
+	return size, worst
+}
+
+// safe is smaller after an expensive Newton iteration.
+func (r *Radau) safe() float64 {
+	most := float64(r.tab.iterations)
+	return safety * (1 + 2*most) / (float64(r.newton.iterations) + 2*most)
+}
+
+func (r *Radau) reject(h, size float64, worst int) error {
+	r.haveJac = r.jacHere
+	return r.errorTooLarge(h, size, r.safe(), worst)
+}
+
+func (r *Radau) accept(h, size float64, cut bool) {
+	r.chooseStages(true)
+	keepJac := r.newton.theta <= slowContraction
+	r.lengthen(h, size, r.safe(), cut, keepJac)
+	r.haveF, r.haveJac, r.jacHere, r.history = false, keepJac, false, true
+}
+
+// chooseStages follows the Newton iteration when the number of stages is free:
+// two failures running mean that steps of five stages are too long for it, and
+// steps of three are taken until the contraction is fast again.
+func (r *Radau) chooseStages(converged bool) {
+	if r.opt.Stages != 0 || r.opt.RTol > 1e-5 {
+		return
+	}
+	if converged {
+		r.poor = 0
+	} else {
+		r.poor++
+	}
+	if converged && r.newton.theta < 0.01 {
+		r.good++
+	} else {
+		r.good = 0
+	}
+	switch {
+	case r.tab.s == 5 && r.poor >= 2:
+		r.use(radau3())
+	case r.tab.s == 3 && r.good >= 4:
+		r.use(radau5())
+	}
 }
