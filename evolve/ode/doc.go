@@ -36,6 +36,13 @@
 // the Newton error multiplied by ω. Output between steps comes from the
 // collocation polynomial alone.
 //
+// # Following an oscillation about a moving centre
+//
+// A [Split] system says which part of f oscillates; [Splitting] follows that part
+// by its exact linear flow about the centre, so that steps of a third of the
+// shortest period are accurate while the oscillation is narrow, and takes the slow
+// part in kicks.
+//
 // # Tolerances
 //
 // RTol and ATol bound the estimated error of one step in the root mean square
