@@ -59,13 +59,16 @@ func (r *run) orbits(lost bool) string {
 	if lost {
 		return OrbitDisrupted
 	}
+	if librating(r.args) {
+		return OrbitLocked
+	}
 	for _, e := range r.h.Events {
 		if e.Name == EventResonanceLeft {
 			return OrbitLeft
 		}
 	}
 	for i := range r.p.groups {
-		if r.p.groups[i].chain != nil {
+		if r.p.groups[i].chain != nil && !r.resolved {
 			return OrbitLocked
 		}
 	}

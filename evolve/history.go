@@ -98,22 +98,25 @@ func Run(ctx context.Context, s *scenarios.Scenario, o Options) (*History, error
 
 // run is a history in the making.
 type run struct {
-	h       *History
-	now     *scenarios.Scenario // the rules at present
-	p       *System
-	integ   *ode.Radau
-	before  ode.Stats // of integrators given up at changes
-	watch   []watched
-	events  *ode.Events
-	ledger  *ledger
-	rec     *recorder
-	track   *tracker
-	pending []int // changes not made yet, by their place in the scenario
-	made    []int
-	seen    []observation
-	t       float64
-	step    float64
-	y       []float64
+	h         *History
+	now       *scenarios.Scenario // the rules at present
+	p         *System
+	integ     ode.Integrator
+	before    ode.Stats // of integrators given up at changes
+	watch     []watched
+	resolved  bool
+	args      []argument // in the resolved regime
+	nextPoint float64    // s, when the track takes the next point there
+	events    *ode.Events
+	ledger    *ledger
+	rec       *recorder
+	track     *tracker
+	pending   []int // changes not made yet, by their place in the scenario
+	made      []int
+	seen      []observation
+	t         float64
+	step      float64
+	y         []float64
 }
 
 func begin(s *scenarios.Scenario, o Options) (*run, error) {
@@ -129,12 +132,18 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 		return nil, err
 	}
 	r.p, r.y = p, y
+	r.resolved = s.Run.Regime == scenarios.Resolved
 	r.seen, err = observations(s)
 	if err != nil {
 		return nil, err
 	}
 	for i := range s.Changes {
 		r.pending = append(r.pending, i)
+	}
+	if r.resolved && o.From == nil {
+		if err := p.still(0, y); err != nil {
+			return nil, err
+		}
 	}
 	r.ledger = newLedger(p, 0, y)
 	if o.From != nil {
@@ -162,14 +171,20 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 	return r, nil
 }
 
-// start gives the present system and state to a fresh integrator, which puts
-// the state on the slow manifold.
+// start gives the present system and state to a fresh integrator, which in the
+// adiabatic regime puts the state on the slow manifold.
 func (r *run) start() error {
 	if r.integ != nil {
 		r.before = sum(r.before, r.integ.Stats())
 	}
 	var err error
-	if r.integ, err = ode.NewRadau(r.p, r.p.options()); err != nil {
+	if r.resolved {
+		r.integ, err = r.p.resolving(r.y)
+		r.args = r.p.arguments(r.y)
+	} else {
+		r.integ, err = ode.NewRadau(r.p, r.p.options())
+	}
+	if err != nil {
 		return err
 	}
 	before := append([]float64(nil), r.y...)
@@ -184,6 +199,9 @@ func (r *run) start() error {
 		list[i] = r.watch[i].Event
 	}
 	r.events = ode.NewEvents(list)
+	if r.resolved {
+		r.events.AtEnds()
+	}
 	r.events.Reset(r.t, r.y)
 	return nil
 }
@@ -232,10 +250,20 @@ func (r *run) advance() error {
 	r.step = seg.T1 - seg.T0
 	r.follow(seg, end)
 	r.t = end
+	if trigger == nil && r.resolved {
+		if done, err := r.resonances(seg); done || err != nil {
+			return err
+		}
+	}
 	switch {
 	case trigger == nil:
 		r.add(seg.Quadratures())
 		copy(r.y, r.integ.State())
+		if r.resolved && r.p.unwind(r.y) {
+			if err := r.integ.Restart(r.t, r.y); err != nil {
+				return err
+			}
+		}
 	default:
 		q := make([]float64, r.p.NumQuadratures())
 		seg.QuadraturesTo(end, q)
@@ -258,10 +286,56 @@ func (r *run) advance() error {
 	return nil
 }
 
+// resonances follows the arguments over a step of the resolved regime, whose end
+// is the time of what they did, and reports whether that ended the step's work: the
+// history is over, or goes on under changed rules.
+func (r *run) resonances(seg *ode.Segment) (done bool, err error) {
+	for i := range r.args {
+		a := &r.args[i]
+		name := a.step(r.integ.State())
+		if name == "" {
+			continue
+		}
+		e := a.passed(r.h.RunID, name, r.t, r.h.Scenario.Run.Stop)
+		r.h.Events = append(r.h.Events, e)
+		w := &watched{Event: ode.Event{Name: name}, body: a.inner, other: a.outer}
+		fired := r.triggered(w)
+		if !e.Ends && fired < 0 {
+			continue
+		}
+		r.add(seg.Quadratures())
+		copy(r.y, r.integ.State())
+		if e.Ends {
+			r.stop(Ended, reasonOf(w))
+			return true, nil
+		}
+		return true, r.change([]int{fired})
+	}
+	return false, nil
+}
+
+// pointsPerHistory bounds the points of the track in the resolved regime, whose
+// steps are as short as a libration.
+const pointsPerHistory = 4000
+
 // follow records and tracks the step up to end.
 func (r *run) follow(seg *ode.Segment, end float64) {
 	r.rec.step(seg, end, r.h.Scenario.Run.Span, r.ledger.sums)
 	r.observe(seg, end)
+	if r.resolved {
+		seg.Eval(end, r.track.y)
+		r.track.shapes(r.p, r.track.y)
+		if end < r.nextPoint {
+			return
+		}
+		r.nextPoint = end + (r.h.Scenario.Run.Span-r.h.Begin)/pointsPerHistory
+		seg.QuadraturesTo(end, r.track.q)
+		for j, s := range r.ledger.sums {
+			r.track.q[j] += s
+		}
+		r.point(end, r.track.y, r.track.q)
+		return
+	}
 	for i := 1; i <= pointsPerStep; i++ {
 		t := seg.T0 + (end-seg.T0)*float64(i)/pointsPerStep
 		y, q := r.track.y, r.track.q

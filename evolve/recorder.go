@@ -73,6 +73,9 @@ func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
 // quadratures at its beginning. A row exactly at last, the end of the history,
 // is left to state.
 func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
+	if r.change <= 0 && (r.grid.every == nil || r.grid.time()*Megayear > end) {
+		return // no row falls on it
+	}
 	seg.Eval(seg.T1, r.y)
 	for i, q := range seg.Quadratures() {
 		r.q[i] = sums[i] + q

@@ -166,7 +166,9 @@ func printChain(w io.Writer, c *evolve.ChainEstimate) {
 		fmt.Fprintln(t)
 	}
 	t.Flush()
-	fmt.Fprintln(w, "  librations, damped at")
+	if len(c.Modes) > 0 {
+		fmt.Fprintln(w, "  librations, damped at")
+	}
 	t = tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
 	for _, m := range c.Modes {
 		fmt.Fprintf(t, "    %.4g yr\t%.3g /Myr\t\n", m.Period()/orbit.Year, -m.Growth*evolve.Megayear)

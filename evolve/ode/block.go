@@ -26,6 +26,22 @@ func (s *Splitting) beginBlock(tEnd float64) error {
 		s.sys.Hold(s.t, s.a)
 		s.sys.Drift(s.a, s.slow, s.q)
 	}
+	for i := range s.a {
+		s.b[i] = s.y[i] + 0.5*length*s.slow[i]
+	}
+	for _, o := range s.osc {
+		copy(s.b[o.from:o.from+o.m], o.centre)
+	}
+	s.sys.Hold(s.t+0.5*length, s.b)
+	s.sys.Drift(s.b, s.g, s.q)
+	if i := notFinite(s.g); i >= 0 {
+		return &StopError{Reason: NotFinite, T: s.t, H: s.h, Component: i}
+	}
+	clear(s.drive)
+	for _, o := range s.osc {
+		copy(o.drift, s.g[o.from:o.from+o.m])
+		copy(s.drive[o.from:], o.drift)
+	}
 	h, err := s.choose(length, longest)
 	if err != nil {
 		return err
@@ -38,19 +54,17 @@ func (s *Splitting) beginBlock(tEnd float64) error {
 	}
 	s.start = s.t
 	copy(s.origin, s.y)
-	for i := range s.a {
-		s.a[i] = s.y[i] + 0.5*length*s.slow[i]
-	}
-	for _, o := range s.osc {
-		copy(s.a[o.from:o.from+o.m], o.centre)
-	}
-	s.sys.Hold(s.t+0.5*length, s.a)
-	s.sys.Drift(s.y, s.g, s.q)
-	if i := notFinite(s.g); i >= 0 {
-		s.left = 0
-		return &StopError{Reason: NotFinite, T: s.t, H: h, Component: i}
-	}
+	s.drifting(s.y, s.g, s.q)
 	return nil
+}
+
+// drifting computes g at y less what the oscillations already have of it, and the
+// integrands.
+func (s *Splitting) drifting(y, g, q []float64) {
+	s.sys.Drift(y, g, q)
+	for i, v := range s.drive {
+		g[i] -= v
+	}
 }
 
 // endBlock notes the mean rates of a block that ends here.

@@ -7,12 +7,13 @@ import (
 	"gonum.org/v1/gonum/mat"
 )
 
-// oscillation advances one block of a [Split] by its f alone: with J the Jacobian
-// at a centre y_c and x = y − y_c,
+// oscillation advances one block of a [Split] by its f and a constant drift c: with
+// J the Jacobian at a centre y_c and x = y − y_c,
 //
-//	dx/dt = J x + r(x),   r(x) = f(y_c + x) − J x = O(x²) about a centre with f = 0,
+//	dx/dt = J x + c + r(x),   r(x) = f(y_c + x) − J x = O(x²) about a centre with f = 0,
 //
-// the linear part by its exponential, exactly, and the remainder by explicit
+// the linear part by its exponential, exactly, so that a state which drifts along
+// without oscillating goes on to do so, and the remainder by explicit
 // midpoint steps, composed by the coefficients of ABA(8,6,4). The error of the
 // midpoint is of order h² in three powers of r, that of the composition of lower
 // powers only at higher order in h.
@@ -21,6 +22,7 @@ type oscillation struct {
 	index   int
 	from, m int
 	centre  []float64
+	drift   []float64
 	jac     []float64
 	radius  float64 // largest modulus of an eigenvalue of J
 	evals   int     // of f
@@ -34,10 +36,11 @@ type oscillation struct {
 	inside, one, two []float64 // scratch of who advances
 }
 
-// propagator holds exp(a_i h J), row-major.
+// propagator holds exp(a_i h J), row-major, and what c adds meanwhile.
 type propagator struct {
-	h float64
-	e [len(abaA)][]float64
+	h   float64
+	e   [len(abaA)][]float64
+	add [len(abaA)][]float64
 }
 
 func newOscillation(sys Split, index int) *oscillation {
@@ -45,7 +48,7 @@ func newOscillation(sys Split, index int) *oscillation {
 	m := r[1] - r[0]
 	vector := func() []float64 { return make([]float64, m) }
 	return &oscillation{
-		sys: sys, index: index, from: r[0], m: m, centre: vector(), jac: make([]float64, m*m),
+		sys: sys, index: index, from: r[0], m: m, centre: vector(), drift: vector(), jac: make([]float64, m*m),
 		lu: newRealLU(m), shifted: make([]float64, m*m),
 		f: vector(), x: vector(), y: vector(), k: vector(), jx: vector(), before: vector(),
 		inside: vector(), one: vector(), two: vector(),
@@ -126,11 +129,24 @@ func (o *oscillation) linearise() error {
 // prepare computes the exponentials of p for steps h.
 func (o *oscillation) prepare(p *propagator, h float64) {
 	p.h = h
-	var scaled, exp mat.Dense
+	m := o.m
+	// The last column of the exponential of (J c; 0 0) is what c adds.
+	scaled := mat.NewDense(m+1, m+1, nil)
+	var exp mat.Dense
 	for i, a := range abaA {
-		scaled.Scale(a*h, mat.NewDense(o.m, o.m, o.jac))
-		exp.Exp(&scaled)
-		p.e[i] = append(p.e[i][:0], exp.RawMatrix().Data...)
+		for r := range m {
+			for k := range m {
+				scaled.Set(r, k, a*h*o.jac[r*m+k])
+			}
+			scaled.Set(r, m, a*h*o.drift[r])
+		}
+		exp.Exp(scaled)
+		p.e[i], p.add[i] = p.e[i][:0], p.add[i][:0]
+		for r := range m {
+			row := exp.RawRowView(r)
+			p.e[i] = append(p.e[i], row[:m]...)
+			p.add[i] = append(p.add[i], row[m])
+		}
 	}
 }
 
@@ -140,13 +156,17 @@ func (o *oscillation) advance(p *propagator, y []float64) {
 		o.x[i] = y[i] - c
 	}
 	for s := range abaStages {
-		multiply(p.e[abaMirror(s, abaStages+1)], o.x, o.y)
+		i := abaMirror(s, abaStages+1)
+		multiply(p.e[i], o.x, o.y)
+		for k, v := range p.add[i] {
+			o.y[k] += v
+		}
 		o.x, o.y = o.y, o.x
 		o.kick(abaB[abaMirror(s, abaStages)] * p.h)
 	}
 	multiply(p.e[0], o.x, o.y)
 	for i, c := range o.centre {
-		y[i] = c + o.y[i]
+		y[i] = c + (o.y[i] + p.add[0][i])
 	}
 }
 
@@ -191,14 +211,17 @@ func (o *oscillation) remainder(x []float64) {
 	}
 }
 
-// exponential takes x to exp(τJ) x by the series, whose terms fall once their
-// number exceeds τ times the spectral radius, of the order of 1.
+// exponential takes x along dx/dt = J x + c over τ by the series, whose terms fall
+// once their number exceeds τ times the spectral radius, of the order of 1.
 func (o *oscillation) exponential(tau float64) {
 	copy(o.y, o.x)
 	for n := 1.0; n < 200; n++ {
 		multiply(o.jac, o.y, o.jx)
 		small := true
 		for i, v := range o.jx {
+			if n == 1 {
+				v += o.drift[i]
+			}
 			v *= tau / n
 			o.y[i] = v
 			o.x[i] += v

@@ -17,10 +17,10 @@ type SplittingOptions struct {
 	MaxSteps  int     // since NewSplitting; 0: no limit
 }
 
-// Splitting integrates a [Split] whose oscillators stay near their centres: f by
-// exponentials of its linear part and small remainders, g by kicks of half a step
-// before and after, and what Hold holds by the midpoint rule over blocks of many
-// steps. With ε the size of the oscillation, the error per unit of time is of order
+// Splitting integrates a [Split] whose oscillators stay near their centres: f, and
+// g at the centre, by exponentials of the linear part and small remainders, what
+// else g is by kicks of half a step before and after, and what Hold holds by the
+// midpoint rule over blocks of many steps. With ε the size of the oscillation, the error per unit of time is of order
 // εh⁸ + ε²h⁶ + ε³h² for f, gh² + g²h for g, and of order Block² for what is held. There are no kinks: a Split is smooth, or its kinks lie in what is held.
 //
 // The error of a step is estimated at the start of a block and every so often by
@@ -35,7 +35,7 @@ type Splitting struct {
 	started bool
 	t       float64
 	y       []float64
-	g, q    []float64 // at the last kick
+	g, q    []float64 // at the last kick; g less drive
 	stats   Stats
 
 	want     float64 // length of step wanted for the next block; 0: the longest
@@ -48,6 +48,7 @@ type Splitting struct {
 	start   float64 // time and state at the start of the block
 	origin  []float64
 	slow    []float64 // mean rates over the last block
+	drive   []float64 // the part of g that is in the linear flow of the oscillators
 	inv     []float64 // reciprocal tolerances
 	a, b    []float64 // scratch
 	seg     *Segment
@@ -101,7 +102,7 @@ func NewSplitting(sys Split, opt SplittingOptions) (*Splitting, error) {
 	}
 	vector := func() []float64 { return make([]float64, n) }
 	s.y, s.g, s.slow, s.origin, s.inv = vector(), vector(), vector(), vector(), vector()
-	s.a, s.b, s.gBefore = vector(), vector(), vector()
+	s.a, s.b, s.gBefore, s.drive = vector(), vector(), vector(), vector()
 	m := sys.NumQuadratures()
 	s.q = make([]float64, m)
 	s.seg = newSegment(n, maxNodes, 1, m)
@@ -185,7 +186,7 @@ func (s *Splitting) Step(tEnd float64) (*Segment, error) {
 	for _, o := range s.osc {
 		o.advance(&o.whole, seg.y1[o.from:o.from+o.m])
 	}
-	s.sys.Drift(seg.y1, s.a, s.q)
+	s.drifting(seg.y1, s.a, s.q)
 	kick(seg.y1, 0.5*h, s.a)
 	if i := notFinite(seg.y1); i >= 0 {
 		s.left = 0
