@@ -24,8 +24,9 @@ type oscillation struct {
 	centre  []float64
 	drift   []float64
 	jac     []float64
-	radius  float64 // largest modulus of an eigenvalue of J
-	evals   int     // of f
+	scale   []float64 // of the components, by balance
+	radius  float64   // largest modulus of an eigenvalue of J
+	evals   int       // of f
 
 	whole, half propagator
 
@@ -48,15 +49,18 @@ func newOscillation(sys Split, index int) *oscillation {
 	m := r[1] - r[0]
 	vector := func() []float64 { return make([]float64, m) }
 	return &oscillation{
-		sys: sys, index: index, from: r[0], m: m, centre: vector(), drift: vector(), jac: make([]float64, m*m),
+		sys: sys, index: index, from: r[0], m: m, centre: vector(), drift: vector(), scale: vector(), jac: make([]float64, m*m),
 		lu: newRealLU(m), shifted: make([]float64, m*m),
 		f: vector(), x: vector(), y: vector(), k: vector(), jx: vector(), before: vector(),
 		inside: vector(), one: vector(), two: vector(),
 	}
 }
 
-// settleTurns bounds the search for a centre, which converges quadratically.
-const settleTurns = 6
+// settleTimes are the T of the search for a centre, over the fastest frequency.
+// Off the centre the eigenvalues of the slow variables are not zero but of the
+// order of the displacement: a long T would take them for an oscillation and
+// wander off, a short one leaves some of the slowest oscillation.
+var settleTimes = [...]float64{20, 50, 200, 1e3, 1e4, 1e4}
 
 // settle looks for the centre about which the state y of the block oscillates:
 // the point with f = 0 and the same slow variables, by
@@ -71,12 +75,13 @@ func (o *oscillation) settle(y, inv []float64) error {
 	if err := o.linearise(); err != nil {
 		return err
 	}
+	if err := o.frequency(); err != nil {
+		return err
+	}
 	first, _ := norm(o.f, inv)
 	best := first
-	for range settleTurns {
-		// The eigenvalues of the slow variables are zero: any T much longer than
-		// the slowest oscillation does.
-		t := 1e4 / o.radius
+	for _, t := range settleTimes {
+		t /= o.radius
 		for i, v := range o.jac {
 			o.shifted[i] = t * v
 		}
@@ -104,10 +109,13 @@ func (o *oscillation) settle(y, inv []float64) error {
 	if !(best < 0.5*first) {
 		copy(o.centre, y)
 	}
-	return o.linearise()
+	if err := o.linearise(); err != nil {
+		return err
+	}
+	return o.frequency()
 }
 
-// linearise computes f, J and its spectral radius at the centre.
+// linearise computes f and J at the centre.
 func (o *oscillation) linearise() error {
 	o.sys.OscillateJacobian(o.index, o.centre, o.f, o.jac)
 	for _, v := range o.jac {
@@ -115,10 +123,16 @@ func (o *oscillation) linearise() error {
 			return &StopError{Reason: NotFinite, Component: o.from, Detail: "Jacobian at the centre of an oscillation"}
 		}
 	}
+	return nil
+}
+
+// frequency computes the spectral radius of J.
+func (o *oscillation) frequency() error {
 	var eig mat.Eigen
 	if !eig.Factorize(mat.NewDense(o.m, o.m, o.jac), mat.EigenNone) {
 		return &StopError{Reason: NotFinite, Component: o.from, Detail: "eigenvalues at the centre of an oscillation"}
 	}
+	balance(o.jac, o.scale)
 	o.radius = 0
 	for _, v := range eig.Values(nil) {
 		o.radius = math.Max(o.radius, cmplx.Abs(v))
@@ -136,16 +150,18 @@ func (o *oscillation) prepare(p *propagator, h float64) {
 	for i, a := range abaA {
 		for r := range m {
 			for k := range m {
-				scaled.Set(r, k, a*h*o.jac[r*m+k])
+				scaled.Set(r, k, a*h*o.jac[r*m+k]*o.scale[k]/o.scale[r])
 			}
-			scaled.Set(r, m, a*h*o.drift[r])
+			scaled.Set(r, m, a*h*o.drift[r]/o.scale[r])
 		}
 		exp.Exp(scaled)
 		p.e[i], p.add[i] = p.e[i][:0], p.add[i][:0]
 		for r := range m {
 			row := exp.RawRowView(r)
-			p.e[i] = append(p.e[i], row[:m]...)
-			p.add[i] = append(p.add[i], row[m])
+			for k, v := range row[:m] {
+				p.e[i] = append(p.e[i], v*o.scale[r]/o.scale[k])
+			}
+			p.add[i] = append(p.add[i], row[m]*o.scale[r])
 		}
 	}
 }
