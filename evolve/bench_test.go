@@ -41,7 +41,7 @@ func BenchmarkIntegrate(b *testing.B) {
 				if err != nil {
 					b.Fatal(err)
 				}
-				integ, err := ode.NewRadau(p, p.options())
+				integ, err := ode.NewRadau(p, p.Tolerances())
 				if err != nil {
 					b.Fatal(err)
 				}

@@ -2,8 +2,10 @@ package evolve
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
+	"tidekiln/evolve/ode"
 	"tidekiln/scenarios"
 )
 
@@ -39,10 +41,10 @@ func (r *run) due() []int {
 }
 
 // triggered returns the first pending change that waits for this event, or −1.
-func (r *run) triggered(w *watched) int {
+func (r *run) triggered(e *Event) int {
 	for _, i := range r.pending {
 		c := r.h.Scenario.Changes[i].When
-		if c != nil && c.Event == w.Name && matches(c.Body, w.body) && matches(c.Other, w.other) {
+		if c != nil && c.Event == e.Name && matches(c.Body, e.Body) && matches(c.Other, e.Other) {
 			return i
 		}
 	}
@@ -51,8 +53,13 @@ func (r *run) triggered(w *watched) int {
 
 // change applies changes at the present time and goes on under the new rules.
 // An interior whose keys change keeps its temperature, or takes the one that
-// is set; what that does to its energy is booked as imposed.
-func (r *run) change(which []int) error {
+// is set; what that does to its energy is booked as imposed. There is a row just
+// before and one just after. Passed are the events that have just occurred.
+func (r *run) change(which []int, passed []ode.Occurrence) error {
+	myr := r.rec.grid.myr(r.t)
+	if r.t > r.h.Begin && myr != r.rec.last {
+		r.rec.state(r.t, myr, r.y, r.ledger.sums, r.step)
+	}
 	for _, i := range which {
 		set := r.h.Scenario.Changes[i].Set
 		var words []string
@@ -61,17 +68,20 @@ func (r *run) change(which []int) error {
 		}
 		detail := strings.Join(words, ", ")
 		if err := r.apply(set, true); err != nil {
-			return fmt.Errorf("change at %.9g Myr (%s): %w", r.t/Megayear, detail, err)
+			return fmt.Errorf("change %d (%s) cannot be made: %w", i+1, detail, err)
 		}
 		r.made = append(r.made, i)
 		r.pending = without(r.pending, i)
 		r.h.Events = append(r.h.Events, Event{runID: r.h.RunID, Time: r.t, Name: EventChange, Detail: detail})
 	}
-	if err := r.start(); err != nil {
+	if err := r.start(passed); err != nil {
 		return err
 	}
 	r.carried.restart(r.p, r.t, r.y)
 	r.rec.follow(r.p, r.carried, r.h.RunID)
+	if r.t > r.h.Begin {
+		r.rec.state(r.t, math.Nextafter(myr, math.Inf(1)), r.y, r.ledger.sums, r.step)
+	}
 	return nil
 }
 
@@ -100,7 +110,7 @@ func (r *run) apply(set []scenarios.Setting, book bool) error {
 	p.Freeze(r.t, r.y)
 	_, now, _ := p.stores(r.t, r.y)
 	if book {
-		r.ledger.impose(now - internal)
+		r.ledger.impose(now-internal, 0)
 	}
 	r.p, r.now = p, next
 	return nil

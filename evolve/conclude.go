@@ -24,7 +24,7 @@ func (r *run) conclude() {
 		switch {
 		case lost[b.name]:
 			o.Outcome = Disrupted
-		case h.Status == Stopped && b.states > 0:
+		case h.Status == StatusFailed && b.states > 0:
 			o.Outcome = Failed
 		}
 		h.Bodies = append(h.Bodies, o)
@@ -40,7 +40,7 @@ func (r *run) conclude() {
 			h.Outcome = o.Outcome
 		}
 	}
-	if h.Status == Stopped {
+	if h.Status == StatusFailed {
 		h.Outcome = Failed
 	}
 	h.OrbitOutcome = r.orbits(len(lost) > 0)
@@ -61,13 +61,16 @@ func (r *run) orbits(lost bool) string {
 	if lost {
 		return OrbitDisrupted
 	}
+	if librating(r.args) {
+		return OrbitLocked
+	}
 	for _, e := range r.h.Events {
 		if e.Name == scenarios.EventResonanceLeft {
 			return OrbitLeft
 		}
 	}
 	for i := range r.p.groups {
-		if r.p.groups[i].chain != nil {
+		if r.p.groups[i].chain != nil && !r.resolved {
 			return OrbitLocked
 		}
 	}

@@ -3,7 +3,6 @@ package evolve
 import (
 	"errors"
 	"fmt"
-	"math"
 	"os"
 	"runtime"
 	"strconv"
@@ -28,7 +27,7 @@ type runRow struct {
 	Misfit                         float64
 	Stats                          ode.Stats
 	endState, endLedger            []float64
-	endLibrations                  []float64
+	endLibrations, endObserved     []float64
 	endChanges                     []float64
 }
 
@@ -37,19 +36,20 @@ type end struct {
 	state      []float64
 	ledger     *ledger
 	librations []float64
+	observed   []float64
 	changes    []int
 }
 
 // pack lists the books: the stores at the start, what was imposed, the sums.
 func (l *ledger) pack() []float64 {
-	return append([]float64{l.orbital0, l.internal0, l.momentum0, l.imposed}, l.sums...)
+	return append([]float64{l.orbital0, l.internal0, l.momentum0, l.imposed, l.spun}, l.sums...)
 }
 
 func unpackLedger(v []float64) (*ledger, error) {
-	if len(v) < 4 {
+	if len(v) < 5 {
 		return nil, fmt.Errorf("end_ledger holds %d values", len(v))
 	}
-	return &ledger{orbital0: v[0], internal0: v[1], momentum0: v[2], imposed: v[3], sums: v[4:]}, nil
+	return &ledger{orbital0: v[0], internal0: v[1], momentum0: v[2], imposed: v[3], spun: v[4], sums: v[5:]}, nil
 }
 
 // Keys of the footers.
@@ -113,7 +113,7 @@ func (h *History) row() runRow {
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
 		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, Misfit: h.Misfit,
-		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endChanges: []float64{},
+		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {
 		row.endChanges = append(row.endChanges, float64(i))
@@ -127,17 +127,6 @@ type Stored struct {
 	Physics                                      int
 	End                                          float64 // s
 	Scenario                                     string  // TOML, resolved
-}
-
-// Continuation is the end of a stored history.
-type Continuation struct {
-	RunID      string
-	Scenario   string // TOML, resolved
-	Time       float64
-	state      []float64
-	ledger     *ledger
-	librations []float64
-	changes    []int
 }
 
 // Describe reads what a dataset says of its history.
@@ -182,64 +171,4 @@ func first[T any](values []T, valid []bool, err error) (T, error) {
 		return none, errors.New("a value of runs is missing")
 	}
 	return values[0], nil
-}
-
-// Load reads the end of the history in a dataset. It must come from the same
-// physics number, or its state means something else.
-func Load(dir string) (*Continuation, error) {
-	s, f, err := stored(dir)
-	if err != nil {
-		return nil, err
-	}
-	if s.Physics != Physics {
-		return nil, fmt.Errorf("%s was made with physics number %d, this program has %d: run its scenario again from the start (scenarios show %s)", dir, s.Physics, Physics, dir)
-	}
-	c := &Continuation{RunID: s.RunID, Scenario: s.Scenario, Time: s.End}
-	var errs [5]error
-	c.state, errs[0] = first(f.Lists("end_state"))
-	books, err := first(f.Lists("end_ledger"))
-	errs[1] = err
-	changes, err := first(f.Lists("end_changes"))
-	errs[2] = err
-	if errs[1] == nil {
-		c.ledger, errs[3] = unpackLedger(books)
-	}
-	c.librations, errs[4] = first(f.Lists("end_librations"))
-	for _, v := range changes {
-		c.changes = append(c.changes, int(v))
-	}
-	if err := errors.Join(errs[:]...); err != nil {
-		return nil, fmt.Errorf("%s cannot be continued: %w", dir, err)
-	}
-	return c, nil
-}
-
-// resume takes up the end of another history: its rules as changed, its state,
-// its books.
-func (r *run) resume(c *Continuation) error {
-	r.t = c.Time
-	for _, i := range c.changes {
-		if i < 0 || i >= len(r.h.Scenario.Changes) {
-			return fmt.Errorf("the dataset has made change %d, which the scenario does not have: leave its changes as they are, add new ones behind", i)
-		}
-		if err := r.apply(r.h.Scenario.Changes[i].Set, false); err != nil {
-			return err
-		}
-		r.made = append(r.made, i)
-		r.pending = without(r.pending, i)
-	}
-	if len(c.state) != r.p.dim || len(c.ledger.sums) != r.p.NumQuadratures() {
-		return fmt.Errorf("the dataset ends in a state of %d variables, the scenario has %d: its bodies or chains differ", len(c.state), r.p.dim)
-	}
-	copy(r.y, c.state)
-	books := *c.ledger
-	books.sums = append([]float64(nil), c.ledger.sums...)
-	r.ledger = &books
-	r.p.Freeze(r.t, r.y)
-	for _, v := range r.y {
-		if math.IsNaN(v) {
-			return fmt.Errorf("the dataset ends in a state that is not a number")
-		}
-	}
-	return nil
 }

@@ -74,8 +74,10 @@ func (p *System) watchlist(stop []scenarios.Trigger) []watched {
 				}}})
 		}
 	}
-	for i := range p.groups {
-		list = append(list, p.groups[i].leaving(p)...)
+	if p.scenario.Run.Regime == scenarios.Adiabatic {
+		for i := range p.groups {
+			list = append(list, p.groups[i].leaving(p)...)
+		}
 	}
 	for i := range p.groups {
 		list = append(list, p.groups[i].librating()...)
@@ -92,9 +94,10 @@ func (p *System) watchlist(stop []scenarios.Trigger) []watched {
 
 func matches(wanted, have string) bool { return wanted == "" || wanted == have }
 
-// leaving returns the ways a chain can lose its resonances. A locked angle
-// stays within 90° of its centre, and a forced eccentricity keeps its sign: it
-// is a constant force over the distance from resonance.
+// leaving returns the ways a chain can lose its resonances in the adiabatic
+// regime. A locked angle stays within 90° of its centre, and a forced eccentricity
+// keeps its sign: it is a constant force over the distance from resonance. (In the
+// resolved regime the arguments themselves tell, see argument.)
 func (g *group) leaving(p *System) []watched {
 	if g.chain == nil {
 		return nil
@@ -134,6 +137,16 @@ func (w *watched) event(runID string, o ode.Occurrence) Event {
 	e := Event{runID: runID, Time: o.T, Name: w.Name, Body: w.body, Other: w.other, Ends: w.ends, Detail: w.detail, Direction: "falling"}
 	if o.Rising {
 		e.Direction = "rising"
+	}
+	return e
+}
+
+// passed turns what an argument did on a step that ended at t into an event,
+// terminal if the scenario stops at it.
+func (a *argument) passed(runID, name string, t float64, stop []scenarios.Trigger) Event {
+	e := Event{runID: runID, Time: t, Name: name, Body: a.inner, Other: a.outer}
+	for _, s := range stop {
+		e.Ends = e.Ends || s.Event == name && matches(s.Body, a.inner) && matches(s.Other, a.outer)
 	}
 	return e
 }

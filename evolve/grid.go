@@ -1,6 +1,9 @@
 package evolve
 
-import "math/big"
+import (
+	"math"
+	"math/big"
+)
 
 // grid is the cadence of a history: the multiples of an exact number of Myr.
 type grid struct {
@@ -39,4 +42,20 @@ func (g *grid) on(t float64) bool {
 	m := int64(n + 0.5)
 	exact, _ := new(big.Rat).Mul(g.every, new(big.Rat).SetInt64(m)).Float64()
 	return exact == t
+}
+
+// myr writes a time, s, in Myr: as the multiple of the cadence that it is to
+// rounding, if it is one.
+func (g *grid) myr(t float64) float64 {
+	myr := t / Megayear
+	if g.every == nil {
+		return myr
+	}
+	step, _ := g.every.Float64()
+	n := new(big.Rat).SetInt64(int64(math.Round(myr / step)))
+	exact, _ := n.Mul(n, g.every).Float64()
+	if math.Abs(exact-myr) <= 4e-16*myr {
+		return exact
+	}
+	return myr
 }

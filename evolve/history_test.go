@@ -84,7 +84,7 @@ func TestQuietChainReachesItsSteadyState(t *testing.T) {
 func TestLedgersClose(t *testing.T) {
 	for _, s := range scenarios.Shipped() {
 		h := run1(t, shipped(t, s.Name))
-		if h.Status != Complete || h.Suspect {
+		if h.Status != StatusComplete || h.Suspect {
 			t.Errorf("%s: %s %s, suspect: %v", s.Name, h.Status, h.Reason, h.Suspect)
 		}
 		f, err := written(t, h).Read("system")
@@ -207,7 +207,7 @@ func TestChanges(t *testing.T) {
 	s := shipped(t, "volcanic-cycle", set("run.span", "600 Myr"), scenarios.Edit{Path: "change", Value: list})
 	h := run1(t, s)
 	b := bodiesOf(t, h)
-	if h.Status != Complete {
+	if h.Status != StatusComplete {
 		t.Fatalf("%s: %s", h.Status, h.Reason)
 	}
 	var changes []Event
@@ -365,7 +365,7 @@ func TestInterruption(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if h.Status != Interrupted || h.Reason != "enough" || !(h.End > 100*Megayear && h.End < 300*Megayear) {
+	if h.Status != StatusInterrupted || h.Reason != "enough" || !(h.End > 100*Megayear && h.End < 300*Megayear) {
 		t.Errorf("%s (%s) at %g Myr", h.Status, h.Reason, h.End/Megayear)
 	}
 	f := bodiesOf(t, h)
@@ -390,7 +390,7 @@ func TestEnds(t *testing.T) {
 
 	// The tide of the central body pumps e of an orbit without a tide of its own.
 	h := run1(t, bare(t, "4e5 km", "0.6", "1e-4"))
-	if h.Status != Ended || last(h).Name != scenarios.EventEccentricityLimit || math.Abs(h.Bodies[0].Eccentricity.Max-nearlyParabolic) > 1e-7 {
+	if h.Status != StatusEnded || last(h).Name != scenarios.EventEccentricityLimit || math.Abs(h.Bodies[0].Eccentricity.Max-nearlyParabolic) > 1e-7 {
 		t.Errorf("%s (%s) at e = %g, want the end at e = %g", h.Status, h.Reason, h.Bodies[0].Eccentricity.Max, nearlyParabolic)
 	}
 
@@ -398,19 +398,19 @@ func TestEnds(t *testing.T) {
 	h = run1(t, bare(t, "3e5 km", "0", "1e-3", set("orbiter.Pebble", `{ mass = "1e17 kg", radius = "40 km", semimajor_axis = "3.2e5 km" }`)))
 	b := bodiesOf(t, h)
 	end := h.End / Megayear
-	if h.Status != Ended || last(h).Name != scenarios.EventOrbitsCross || h.Outcome != Disrupted || h.OrbitOutcome != OrbitDisrupted {
+	if h.Status != StatusEnded || last(h).Name != scenarios.EventOrbitsCross || h.Outcome != Disrupted || h.OrbitOutcome != OrbitDisrupted {
 		t.Errorf("%s (%s), %s/%s, want crossing orbits", h.Status, h.Reason, h.Outcome, h.OrbitOutcome)
 	}
 	near(t, "semi-major axis at the crossing", value(t, b, "Ember", end, "semimajor_axis_km"), value(t, b, "Pebble", end, "semimajor_axis_km"), 1e-7)
 
 	s := shipped(t, "lone-moon", scenarios.Edit{Path: "run.stop", Value: `[{ event = "solidus-crossed", body = "Ember" }]`})
 	h = run1(t, s)
-	if e := last(h); h.Status != Ended || e.Name != "solidus-crossed" || !e.Ends || h.End != e.Time || !strings.Contains(h.Reason, "solidus-crossed: Ember") {
+	if e := last(h); h.Status != StatusEnded || e.Name != "solidus-crossed" || !e.Ends || h.End != e.Time || !strings.Contains(h.Reason, "solidus-crossed: Ember") {
 		t.Errorf("%s (%s) at %g Myr with %+v, want the stop asked for", h.Status, h.Reason, h.End/Megayear, e)
 	}
 
 	h = run1(t, shipped(t, "volcanic-cycle", set("run.max_steps", "100")))
-	if h.Status != Stopped || h.Outcome != Failed || !strings.Contains(h.Reason, "run.max_steps") {
+	if h.Status != StatusFailed || h.Outcome != Failed || !strings.Contains(h.Reason, "run.max_steps") {
 		t.Errorf("%s %s (%s), want a failure that names the budget", h.Status, h.Outcome, h.Reason)
 	}
 	if f := bodiesOf(t, h); f.Len() < 10 {

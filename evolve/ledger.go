@@ -77,7 +77,7 @@ func (p *System) stores(t float64, y []float64) (orbital, internal, momentum flo
 // ledger holds the accounts of a history up to some time.
 type ledger struct {
 	orbital0, internal0, momentum0 float64   // stores at the start
-	imposed                        float64   // energy brought by changes of the rules, J
+	imposed, spun                  float64   // energy, J, and angular momentum, kg m²/s, brought by changes of the rules and projections
 	sums                           []float64 // quadratures
 }
 
@@ -88,14 +88,17 @@ func newLedger(p *System, t float64, y []float64) *ledger {
 	return l
 }
 
-// impose books what a change brought: the difference of the stores under the
-// new and the old rules at one instant.
-func (l *ledger) impose(energy float64) { l.imposed += energy }
+// impose books what a change brought: the differences of the stores of energy
+// and of angular momentum under the new and the old rules at one instant.
+func (l *ledger) impose(energy, momentum float64) {
+	l.imposed += energy
+	l.spun += momentum
+}
 
 // closure is how far the books are from closing, NaN where nothing turned over:
 //
 //	energy    |ΔH + ΔE_int + ∫loss − ∫radiogenic − ∫central work − imposed| / ∫(Σ|tidal heat| + |central work|)
-//	momentum  |ΔΣ(Λ−Γ) − ∫ΣT| / ∫Σ|T|
+//	momentum  |ΔΣ(Λ−Γ) − ∫ΣT − imposed| / ∫Σ|T|
 type closure struct{ energy, momentum float64 }
 
 func (l *ledger) closure(p *System, t float64, y, sums []float64) closure {
@@ -108,7 +111,7 @@ func (l *ledger) closure(p *System, t float64, y, sums []float64) closure {
 	}
 	return closure{
 		energy:   ratio(math.Abs(residual), total[energyTurnover]),
-		momentum: ratio(math.Abs(momentum-l.momentum0-total[centralTorque]), total[momentumTurnover]),
+		momentum: ratio(math.Abs(momentum-l.momentum0-total[centralTorque]-l.spun), total[momentumTurnover]),
 	}
 }
 

@@ -2,6 +2,8 @@ package evolve
 
 import (
 	"math"
+	"math/cmplx"
+	"math/rand/v2"
 	"slices"
 
 	"tidekiln/evolve/ode"
@@ -67,7 +69,7 @@ func newCarrier(p *System, t float64, y []float64, stored []float64) (*carrier, 
 	l := &carrier{p: p, y: make([]float64, p.dim), dy: make([]float64, p.dim), jac: make([]float64, p.dim*p.dim)}
 	for i := range p.groups {
 		g := &p.groups[i]
-		if g.chain == nil {
+		if g.chain == nil || g.free {
 			continue
 		}
 		c := libration{group: i, knots: []*knot{newKnot(g.chain)}, first: math.Inf(1)}
@@ -87,7 +89,7 @@ func newCarrier(p *System, t float64, y []float64, stored []float64) (*carrier, 
 		}
 		l.widths(c, k, y)
 		for j := range k.size {
-			k.size[j] = math.Log(p.scenario.Chains[i].Libration / slices.Max(k.width[j]))
+			k.size[j] = math.Log(p.scenario.Chains[c.group].Libration / slices.Max(k.width[j]))
 		}
 		c.first = k.slowest()
 	}
@@ -240,6 +242,29 @@ func (l *carrier) restart(p *System, t float64, y []float64) {
 		if c.lost = k.modes.Track(c.end().modes, l.block(c), p.dim); c.lost == nil {
 			l.widths(c, k, y)
 			c.knots, c.spare = []*knot{k}, nil // the others are the old system's
+		}
+	}
+}
+
+// noCarrier carries nothing: librations are followed.
+func noCarrier(p *System) *carrier { return &carrier{p: p} }
+
+// displace gives the librations carried to a state on the slow manifold, for
+// them to be followed from there: δy = Re Σ √I v e^{iθ}, phases θ from the seed.
+func (l *carrier) displace(y []float64, seed int64) {
+	phases := rand.New(rand.NewPCG(uint64(seed), 0))
+	for i := range l.chains {
+		c := &l.chains[i]
+		if c.lost != nil {
+			continue
+		}
+		at := l.p.groups[c.group].at
+		k := c.end()
+		for j := range k.modes.Modes {
+			s := cmplx.Rect(math.Exp(k.size[j]), 2*math.Pi*phases.Float64())
+			for q, v := range k.modes.Modes[j].Right {
+				y[at+q] += real(s * v)
+			}
 		}
 	}
 }

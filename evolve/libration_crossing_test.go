@@ -59,7 +59,7 @@ func TestPassageOfTwoLibrations(t *testing.T) {
 		from := startOf(t, p, y).chains[0].end()
 		// Of the same action, one would not see that they exchange it.
 		path.end().size[0], path.end().size[1] = 0, math.Log(math.Sqrt(3))
-		integ, err := ode.NewRadau(p, p.options())
+		integ, err := ode.NewRadau(p, p.Tolerances())
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -91,7 +91,7 @@ func TestPassageOfTwoLibrations(t *testing.T) {
 				for j, v := range from.modes.Modes[k].Right {
 					z[j] += way * scale * real(v)
 				}
-				ends[i] = resolved(p, z, span, from.modes.Modes[0].Period()/5)
+				ends[i] = extrapolated(p, z, span, from.modes.Modes[0].Period()/5)
 			}
 			for q := range want {
 				sum := complex(0, 0)

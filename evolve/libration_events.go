@@ -90,10 +90,13 @@ func (l *carrier) occurred(t1 float64) []news {
 	return list
 }
 
-// occurrence is an event of the integrator or of the librations.
+// occurrence is an event of the integrator, of the librations carried, or of an
+// argument followed.
 type occurrence struct {
 	ode.Occurrence
-	news *news // nil for the former
+	news    *news // of the librations
+	passage bool  // of an argument
+	told    Event // by that
 }
 
 // occurred carries the librations over an accepted step and returns all that
@@ -102,14 +105,20 @@ func (r *run) occurred(seg *ode.Segment) []occurrence {
 	r.carried.advance(seg)
 	var list []occurrence
 	for _, o := range r.events.Locate(seg) {
-		list = append(list, occurrence{o, nil})
+		list = append(list, occurrence{Occurrence: o})
 	}
 	for _, n := range r.carried.occurred(seg.T1) {
 		// Those of the first chain are the first without a value.
 		at := slices.IndexFunc(r.watch, func(w watched) bool { return w.Value == nil })
 		y := make([]float64, r.p.dim)
 		seg.Eval(n.t, y)
-		list = append(list, occurrence{ode.Occurrence{Event: at + n.chain*len(librationEvents) + n.event, T: n.t, Y: y}, &n})
+		list = append(list, occurrence{Occurrence: ode.Occurrence{Event: at + n.chain*len(librationEvents) + n.event, T: n.t, Y: y}, news: &n})
+	}
+	for i := range r.args {
+		a := &r.args[i]
+		if name := a.step(r.integ.State()); name != "" {
+			list = append(list, occurrence{Occurrence: ode.Occurrence{T: seg.T1}, passage: true, told: a.passed(r.h.RunID, name, seg.T1, r.h.Scenario.Run.Stop)})
+		}
 	}
 	slices.SortStableFunc(list, func(a, b occurrence) int { return cmp.Compare(a.T, b.T) })
 	return list
@@ -117,6 +126,9 @@ func (r *run) occurred(seg *ode.Segment) []occurrence {
 
 // event words an occurrence.
 func (r *run) event(o *occurrence) Event {
+	if o.passage {
+		return o.told
+	}
 	e := r.watch[o.Event].event(r.h.RunID, o.Occurrence)
 	if o.news != nil {
 		e.Direction, e.Detail = o.news.direction, o.news.detail

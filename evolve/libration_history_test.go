@@ -109,7 +109,7 @@ func TestOverstableLibrationIsTold(t *testing.T) {
 			told = append(told, e)
 		}
 	}
-	if h.Status != Complete || len(told) == 0 {
+	if h.Status != StatusComplete || len(told) == 0 {
 		t.Fatalf("%s %s, %d overstable librations, want a complete history with some", h.Status, h.Reason, len(told))
 	}
 	d := written(t, h)
@@ -133,7 +133,7 @@ func TestOverstableLibrationIsTold(t *testing.T) {
 		}
 	}
 	ended := run1(t, shipped(t, "quiet-chain", append(edits, set("run.stop", `[{ event = "libration-overstable" }]`))...))
-	if ended.Status != Ended || ended.End != told[0].Time {
+	if ended.Status != StatusEnded || ended.End != told[0].Time {
 		t.Errorf("%s %s at %.9g Myr, want it ended at %.9g", ended.Status, ended.Reason, ended.End/Megayear, told[0].Time/Megayear)
 	}
 }
@@ -147,13 +147,11 @@ func TestFoldIsTold(t *testing.T) {
 		t.Fatal(err)
 	}
 	r.p.bodies[0].primary = orbit.NewPrimaryTide(r.p.groups[0].Group, 0, orbit.CentralTide{K2OverQ: -1e-2})
-	if err := r.start(); err != nil {
+	if err := r.start(nil); err != nil {
 		t.Fatal(err)
 	}
 	for r.h.Status == "" {
-		if err := r.advance(); err != nil {
-			t.Fatal(err)
-		}
+		r.advance()
 	}
 	var names []string
 	for _, e := range r.h.Events {
@@ -213,8 +211,9 @@ func TestChangeKeepsActions(t *testing.T) {
 		if time[i] != 5 {
 			continue
 		}
-		near(t, "action over the change", action[i+1], action[i], 2e-3*math.Abs(growth[i+1]))
-		near(t, "growth over the change", growth[i+1], 10*growth[i], 0.1)
+		// The next row is just after the change, where no drift is known yet.
+		near(t, "action over the change", action[i+1], action[i], 1e-12)
+		near(t, "growth over the change", growth[i+2], 10*growth[i], 0.1)
 		return
 	}
 	t.Error("no row at the change")

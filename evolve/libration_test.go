@@ -59,7 +59,7 @@ func projected(t testing.TB, s *scenarios.Scenario) (*System, []float64) {
 // onManifold projects a state.
 func onManifold(t testing.TB, p *System, at float64, y []float64) []float64 {
 	t.Helper()
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -144,7 +144,7 @@ func TestCarriedGrowthAgainstResolvedIntegration(t *testing.T) {
 		modes := l.chains[0].end().modes.Modes
 		const span = 500 * orbit.Year
 		// The adiabatic path: one step of it carries the librations.
-		integ, err := ode.NewRadau(p, p.options())
+		integ, err := ode.NewRadau(p, p.Tolerances())
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -171,7 +171,7 @@ func TestCarriedGrowthAgainstResolvedIntegration(t *testing.T) {
 				for j, v := range from.modes.Modes[k].Right {
 					z[j] += scale * real(v)
 				}
-				ends[i] = resolved(p, z, span, modes[0].Period()/5)
+				ends[i] = extrapolated(p, z, span, modes[0].Period()/5)
 			}
 			amplitude := func(m *orbit.Eigenmode, a, b []float64) float64 {
 				sum := complex(0, 0)
@@ -214,7 +214,7 @@ func widest(w []float64) float64 {
 func TestMigrationKeepsActions(t *testing.T) {
 	p, y := projected(t, push(t, "-0.7 deg/day", "1.3e-3", nil))
 	l := startOf(t, p, y)
-	o := p.options()
+	o := p.Tolerances()
 	o.MaxStep = 0.02 * Megayear
 	integ, err := ode.NewRadau(p, o)
 	if err != nil {
@@ -295,7 +295,7 @@ func TestInteriorsDoNotAnswerLibrations(t *testing.T) {
 func TestCarryingAllocatesNothing(t *testing.T) {
 	p, y := projected(t, shipped(t, "volcanic-cycle"))
 	l := startOf(t, p, y)
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -317,7 +317,7 @@ func TestCarryingAllocatesNothing(t *testing.T) {
 func BenchmarkCarry(b *testing.B) {
 	p, y := projected(b, shipped(b, "volcanic-cycle"))
 	l := startOf(b, p, y)
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		b.Fatal(err)
 	}

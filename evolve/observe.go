@@ -49,8 +49,8 @@ func observations(s *scenarios.Scenario) ([]observation, error) {
 	return list, nil
 }
 
-// observe takes the model's values that fall on a step up to end.
-func (r *run) observe(seg *ode.Segment, end float64) {
+// observeStep takes the model's values that fall on a step up to end.
+func (r *run) observeStep(seg *ode.Segment, end float64) {
 	for i := range r.seen {
 		if o := &r.seen[i]; o.At > seg.T0 && o.At <= end {
 			seg.Eval(o.At, r.track.y)
@@ -59,9 +59,42 @@ func (r *run) observe(seg *ode.Segment, end float64) {
 	}
 }
 
+// observe takes those that fall on the present time.
+func (r *run) observe(t float64) {
+	for i := range r.seen {
+		if o := &r.seen[i]; o.At == t {
+			o.model = r.modelValue(o, t, r.y)
+		}
+	}
+}
+
 func (r *run) modelValue(o *observation, t float64, y []float64) float64 {
 	r.rec.sampler.take(t, y, r.rec.books, r.ledger.sums, t/Megayear, false)
 	return o.value(&r.rec.sampler.bodies[o.index])
+}
+
+// met lists the observations that have been met, each by its place in the
+// scenario and the model's value, for a history that continues this one.
+func (r *run) met() []float64 {
+	list := []float64{}
+	for i := range r.seen {
+		if o := &r.seen[i]; o.At >= 0 && !math.IsNaN(o.model) {
+			list = append(list, float64(i), o.model)
+		}
+	}
+	return list
+}
+
+// meet takes such a list up.
+func (r *run) meet(list []float64) error {
+	for k := 0; k+1 < len(list); k += 2 {
+		i := int(list[k])
+		if i < 0 || i >= len(r.seen) {
+			return fmt.Errorf("the dataset has met observation %d, which the scenario does not have: its observations differ", i+1)
+		}
+		r.seen[i].model = list[k+1]
+	}
+	return nil
 }
 
 // misfits returns the root mean square of (model − observed)/error of all

@@ -22,6 +22,7 @@ type recorder struct {
 	anchor  *candidate
 	pending []candidate
 	y, q    []float64
+	last    float64 // Myr, of the row last written; NaN before the first
 
 	bodies, resonances, librations, system *record.Rows
 }
@@ -39,7 +40,7 @@ type candidate struct {
 
 func newRecorder(p *System, carried *carrier, l *ledger, g *grid, change float64, runID string) *recorder {
 	r := &recorder{
-		ledger: l, grid: g, change: change,
+		ledger: l, grid: g, change: change, last: math.NaN(),
 		bodies: record.NewRows(&bodiesTable.Table), resonances: record.NewRows(&resonancesTable.Table), system: record.NewRows(&systemTable.Table),
 		librations: record.NewRows(&librationsTable.Table),
 	}
@@ -78,6 +79,9 @@ func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
 // quadratures at its beginning. A row exactly at last, the end of the history,
 // is left to state.
 func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
+	if r.change <= 0 && (r.grid.every == nil || r.grid.time()*Megayear > end) {
+		return // no row falls on it
+	}
 	seg.Eval(seg.T1, r.y)
 	for i, q := range seg.Quadratures() {
 		r.q[i] = sums[i] + q
@@ -243,6 +247,7 @@ func (r *recorder) straight(a, b, m *candidate, bound float64) bool {
 }
 
 func (r *recorder) write(c *candidate) {
+	r.last = c.t
 	for i := range c.bodies {
 		bodiesTable.add(r.bodies, &c.bodies[i])
 	}

@@ -136,7 +136,7 @@ func (s *sampler) take(t float64, y []float64, b books, sums []float64, myr floa
 			o := &s.resonances[i]
 			i++
 			at(&o.moment)
-			o.offset, o.angle = g.rates.Offset[r], math.NaN()
+			o.offset, o.angle, o.width = g.rates.Offset[r], math.NaN(), math.NaN()
 			if r > 0 {
 				o.angle = g.chain.Angle(r, y[g.at:g.at+g.Dim()])
 			}

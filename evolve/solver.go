@@ -21,9 +21,9 @@ const projectionStep = 1e-4 * Megayear
 // librations: a state off the slow manifold stops with a reason instead.
 const shortestStep = 1e-9 * Megayear
 
-// options gives the integrator its tolerances: relative ones throughout, above
+// Tolerances gives the integrator its options: relative ones throughout, above
 // the smallest size that matters of each variable.
-func (p *System) options() ode.Options {
+func (p *System) Tolerances() ode.Options {
 	run := p.scenario.Run
 	rtol := run.Tolerance
 	o := ode.Options{
@@ -35,7 +35,7 @@ func (p *System) options() ode.Options {
 	}
 	for i := range p.groups {
 		g := &p.groups[i]
-		if g.chain == nil {
+		if g.chain == nil || g.free {
 			continue
 		}
 		if o.Fast == nil {
@@ -97,6 +97,9 @@ func (r *run) explain(e *ode.StopError) string {
 	case ode.StepBudget:
 		return fmt.Sprintf("step budget of %d used up %s%s; raise run.max_steps or loosen run.tolerance", r.h.Scenario.Run.MaxSteps, at, where)
 	case ode.StepTooSmall:
+		if r.resolved {
+			break
+		}
 		return fmt.Sprintf("step of %.2g yr too small %s%s; a chain near the end of its lock has left the slow manifold that the adiabatic regime follows", e.H/orbit.Year, at, where)
 	case ode.NotFinite:
 		return fmt.Sprintf("the right-hand side is not finite %s%s; the state has left the domain of its model", at, where)

@@ -66,7 +66,7 @@ func Survey(s *scenarios.Scenario, displacement float64) (*Estimates, error) {
 	if err != nil {
 		return nil, err
 	}
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		return nil, err
 	}
@@ -161,7 +161,9 @@ func (p *System) estimateChain(i int, jac []float64, bodies []BodyEstimate) (Cha
 		copy(block[r*n:(r+1)*n], jac[(g.at+r)*p.dim+g.at:])
 	}
 	var err error
-	if c.Modes, err = g.chain.Spectrum(block, n); err != nil {
+	if g.free {
+		// A circulating angle has no centre to librate about.
+	} else if c.Modes, err = g.chain.Spectrum(block, n); err != nil {
 		return c, fmt.Errorf("chain %s: %w", g.name, err)
 	}
 	var masses, axes, motions, torques []float64
@@ -176,7 +178,7 @@ func (p *System) estimateChain(i int, jac []float64, bodies []BodyEstimate) (Cha
 			break
 		}
 		centre := math.NaN()
-		if k > 0 {
+		if k > 0 && !g.free {
 			centre = g.chain.Centre(k)
 		}
 		c.Resonances = append(c.Resonances, ResonanceEstimate{

@@ -34,6 +34,7 @@ type System struct {
 type group struct {
 	orbit.Group
 	chain *orbit.Chain // nil for a lone orbiter
+	free  bool         // a chain whose angles may circulate
 	name  string       // of the chain
 	at    int
 	rates *orbit.Rates
@@ -79,23 +80,19 @@ func NewSystem(s *scenarios.Scenario) (*System, []float64, error) {
 		index[o.Name] = i
 	}
 	for _, c := range s.Chains {
-		start := orbit.LockedStart{Primary: p.primary, Ratios: c.Ratios, Offset: c.Offset}
 		g := group{name: c.Name, at: len(y)}
+		var members []scenarios.Orbiter
 		for k, name := range c.Members {
 			i := index[name]
-			o := s.Orbiters[i]
-			start.Masses = append(start.Masses, o.Mass)
-			if k == 0 {
-				start.Period, start.SemimajorAxis = o.Period, o.SemimajorAxis
-			}
+			members = append(members, s.Orbiters[i])
 			p.bodies[i].group, p.bodies[i].member = len(p.groups), k
 			g.body = append(g.body, i)
 		}
-		chain, state, err := orbit.Lock(start)
+		chain, state, err := c.Start(p.primary, members)
 		if err != nil {
 			return nil, nil, fmt.Errorf("chain %s: %w", c.Name, err)
 		}
-		g.Group, g.chain, g.rates = chain, chain, chain.NewRates()
+		g.Group, g.chain, g.free, g.rates = chain, chain, c.Free, chain.NewRates()
 		p.groups = append(p.groups, g)
 		y = append(y, state...)
 	}
@@ -180,21 +177,26 @@ func (p *System) evaluate(y, dy []float64, derivs bool) {
 		g := &p.groups[i]
 		gy, gdy := y[g.at:g.at+g.Dim()], dy[g.at:g.at+g.Dim()]
 		g.Flow(gy, gdy, g.rates)
-		for k, j := range g.body {
-			b := &p.bodies[j]
-			l, gamma := g.Actions(k, gy)
-			b.heat, b.torque, b.work = 0, 0, 0
-			if b.tide != nil {
-				b.tide.Kick(l, gamma, b.interior, b.tideKick, derivs)
-				g.Push(k, b.tideKick, gy, gdy)
-				b.heat = -g.Power(k, b.tideKick, gy, g.rates)
-			}
-			if b.primary != nil {
-				b.primary.Kick(l, gamma, b.primaryKick)
-				g.Push(k, b.primaryKick, gy, gdy)
-				b.work = g.Power(k, b.primaryKick, gy, g.rates)
-				b.torque = g.Torque(k, b.primaryKick, gy)
-			}
+		p.tides(g, gy, gdy, derivs)
+	}
+}
+
+// tides adds the tides of a group at the state of its last Flow to gdy.
+func (p *System) tides(g *group, gy, gdy []float64, derivs bool) {
+	for k, j := range g.body {
+		b := &p.bodies[j]
+		l, gamma := g.Actions(k, gy)
+		b.heat, b.torque, b.work = 0, 0, 0
+		if b.tide != nil {
+			b.tide.Kick(l, gamma, b.interior, b.tideKick, derivs)
+			g.Push(k, b.tideKick, gy, gdy)
+			b.heat = -g.Power(k, b.tideKick, gy, g.rates)
+		}
+		if b.primary != nil {
+			b.primary.Kick(l, gamma, b.primaryKick)
+			g.Push(k, b.primaryKick, gy, gdy)
+			b.work = g.Power(k, b.primaryKick, gy, g.rates)
+			b.torque = g.Torque(k, b.primaryKick, gy)
 		}
 	}
 }

@@ -74,6 +74,14 @@ func (t *tracker) point(p *System, time float64, y, sums []float64) {
 	}
 }
 
+// shapes adds the eccentricities at the state y.
+func (t *tracker) shapes(p *System, y []float64) {
+	for i := range t.bodies {
+		_, e := p.shape(i, y)
+		t.bodies[i].e.add(e)
+	}
+}
+
 // last returns the part of the track over [from, ∞), at least two points of it.
 func (t *track) last(from float64) track {
 	i, _ := slices.BinarySearch(t.time, from)

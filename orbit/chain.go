@@ -19,13 +19,15 @@ import "math"
 //	y[3N+r−1]   φ_r − centre_r, rad, r = 1…N−2 (counting the first pair as 0)
 //
 // The reference Λ0 and the mean motions at it are those of the start, where
-// dψ_r/dt is the given offset exactly; every later rate is that plus a
-// deviation computed without cancellation. A Chain is immutable.
+// dψ_r/dt is known exactly: the given offset of a locked start ([Lock]), the
+// one the elements give of a free start ([Free]), whose centres are all 0.
+// Every later rate is that plus a deviation computed without cancellation. A
+// Chain is immutable.
 type Chain struct {
 	primary Primary
 	members []member
 	pairs   []pair
-	offset  float64   // dψ_r/dt at the reference, rad/s
+	offset  []float64 // dψ_r/dt at the reference, rad/s
 	rateRef []float64 // oblate and resonant part of dλ/dt at the reference
 }
 
@@ -162,7 +164,7 @@ func (c *Chain) longitudes(y []float64, w *Rates) {
 	}
 	for r := range c.pairs {
 		j := c.pairs[r].j
-		w.Offset[r] = c.offset + (j+1)*w.Longitude[r+1] - j*w.Longitude[r]
+		w.Offset[r] = c.offset[r] + (j+1)*w.Longitude[r+1] - j*w.Longitude[r]
 	}
 }
 

@@ -62,10 +62,11 @@ func Lock(s LockedStart) (*Chain, []float64, error) {
 // (Λ, Y) gains three to four digits a turn.
 func lockAt(s LockedStart, choice int) (*Chain, []float64, error) {
 	n := len(s.Masses)
-	c := &Chain{primary: s.Primary, offset: s.Offset, pairs: make([]pair, n-1), rateRef: make([]float64, n), members: make([]member, n)}
+	c := newChain(s.Primary, n)
 	for r, j := range s.Ratios {
 		p := &c.pairs[r]
 		p.j, p.sign = float64(j), 1
+		c.offset[r] = s.Offset
 		p.f1, p.f2 = Coefficients(j)
 		if r > 0 && choice>>(r-1)&1 == 1 {
 			p.centre, p.sign = math.Pi, -1
@@ -143,4 +144,11 @@ func nonzero(x float64) float64 {
 		return 1e-300
 	}
 	return x
+}
+
+func newChain(p Primary, n int) *Chain {
+	return &Chain{
+		primary: p, members: make([]member, n), pairs: make([]pair, n-1),
+		offset: make([]float64, n-1), rateRef: make([]float64, n),
+	}
 }

@@ -80,3 +80,22 @@ func (c *Chain) stable(y []float64) (bool, error) {
 	}
 	return true, nil
 }
+
+// Fastest returns the largest modulus, rad/s, of an eigenvalue of the tide-free
+// flow at y: the frequency of the fastest libration, or of an angle that
+// circulates faster.
+func (c *Chain) Fastest(y []float64) (float64, error) {
+	dim := c.Dim()
+	jac, w := make([]float64, dim*dim), c.NewRates()
+	c.Flow(y, make([]float64, dim), w)
+	c.Jacobian(y, w, jac, dim)
+	values, err := eigenvalues(jac, dim)
+	if err != nil {
+		return 0, err
+	}
+	fastest := cmplx.Abs(values[0])
+	for _, offset := range w.Offset {
+		fastest = math.Max(fastest, math.Abs(offset))
+	}
+	return fastest, nil
+}

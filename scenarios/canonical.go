@@ -25,14 +25,14 @@ func (s *Scenario) sections() []section {
 		{"[run]", runKeys, s.Run.declared()},
 		{"[central]", centralKeys, s.Central.declared()},
 	}
-	locked := map[string]bool{}
-	for _, c := range s.Chains {
-		for _, m := range c.Members {
-			locked[m] = true
+	chain := map[string]*Chain{}
+	for i := range s.Chains {
+		for _, m := range s.Chains[i].Members {
+			chain[m] = &s.Chains[i]
 		}
 	}
 	for _, o := range s.Orbiters {
-		v := o.declared(locked[o.Name])
+		v := o.declared(chain[o.Name])
 		delete(v.Map, "interior")
 		all = append(all, section{"[orbiter." + o.Name + "]", orbiterKeys, v})
 		if k := keyNamed(orbiterKeys, "interior"); o.Interior.Law != "" {

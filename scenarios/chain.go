@@ -14,13 +14,13 @@ var chainKeys = []key.Key{
 		Meaning: `two to ten neighbouring orbiters, innermost first: ["NAME", "NAME"]`},
 	{Name: "ratios", Kind: key.Special, Fixed: true,
 		Meaning: `first-order resonance of each pair of neighbours, one fewer than members: ["2:1", "3:2"]`},
-	{Name: "offset", Kind: key.Quantity, Unit: "deg/day", Fixed: true,
-		Meaning: "(j+1) n_outer − j n_inner, common to the chain, not 0; it fixes the outer orbits and the forced eccentricities"},
+	{Name: "state", Kind: key.Choice, Choices: []string{"locked", "free"}, Default: "locked", Fixed: true,
+		Meaning: "start: locked, on the forced equilibrium; free, from the period, eccentricity, pericentre and mean_longitude of each member, for the resolved regime"},
 	{Name: "libration", Kind: key.Quantity, Unit: "deg", Default: 0.01 * math.Pi / 180, Range: key.From(0, math.Pi/2), Fixed: true,
 		Meaning: "half-width at the start of each libration in the angle it shows in most; what tides and migration make of it is carried along"},
+	{Name: "offset", Kind: key.Quantity, Unit: "deg/day", Optional: true, Fixed: true,
+		Meaning: "(j+1) n_outer − j n_inner, common to a locked chain, which must give it, not 0; it fixes the outer orbits and the forced eccentricities"},
 }
-
-var chainLater = []string{"state"}
 
 // longestChain bounds the members: a chain of N has 2^(N−2) candidate centres.
 const longestChain = 10
@@ -34,8 +34,10 @@ func (r *reader) chains(n *node, top *scope) []Chain {
 			continue
 		}
 		r.bodyName(name, at)
-		v, _ := r.values(child, &scope{at: at, keys: chainKeys, later: chainLater, outer: top})
+		v, _ := r.values(child, &scope{at: at, keys: chainKeys, outer: top})
 		c := Chain{Name: name}
+		c.Free = v.Map["state"] == "free"
+		r.offset(c, child, at)
 		c.Offset, _ = v.Map["offset"].(float64)
 		c.Libration, _ = v.Map["libration"].(float64)
 		if v.Map["offset"] != nil && c.Offset == 0 {
@@ -58,6 +60,23 @@ func (r *reader) chains(n *node, top *scope) []Chain {
 		all = append(all, c)
 	}
 	return all
+}
+
+// offset reports an offset that a locked chain lacks or a free one has.
+func (r *reader) offset(c Chain, n *node, at path) {
+	given := n.table["offset"] != nil
+	switch {
+	case c.Free && given:
+		r.report(at.with("offset"), "is already fixed by the elements of the members", `remove it, or write state = "locked"`)
+	case !c.Free && !given:
+		for _, name := range n.names {
+			if !contains(names(chainKeys), name) && nearest(name, names(chainKeys)) == "offset" {
+				return // reported as that
+			}
+		}
+		k := keyNamed(chainKeys, "offset")
+		r.report(at.with("offset"), "is missing", "add "+sample(k)+": "+k.Meaning)
+	}
 }
 
 func (r *reader) members(n *node, at path) []string {
@@ -138,9 +157,14 @@ func ratioOf(n *node) (j int, what, try string) {
 }
 
 func (c Chain) declared() key.Values {
-	return key.Values{Map: map[string]any{
+	v := map[string]any{
 		"members": literal(joined(c.Members, quoteTOML)),
 		"ratios":  literal(joined(c.Ratios, func(j int) string { return quoteTOML(fmt.Sprintf("%d:%d", j+1, j)) })),
-		"offset":  c.Offset, "libration": c.Libration,
-	}}
+	}
+	if c.Free {
+		v["state"] = "free"
+	} else {
+		v["state"], v["offset"], v["libration"] = "locked", c.Offset, c.Libration
+	}
+	return key.Values{Map: v}
 }

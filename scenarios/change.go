@@ -227,7 +227,7 @@ func (s *Scenario) textAt(p path) string {
 		rest = p[2:]
 		for _, o := range s.Orbiters {
 			if o.Name == p[1] {
-				keys, v = orbiterKeys, o.declared(false)
+				keys, v = orbiterKeys, o.declared(nil)
 			}
 		}
 	}

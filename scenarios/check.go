@@ -37,6 +37,15 @@ func (r *reader) structure(s *Scenario) {
 				continue
 			}
 			member[m] = c.Name
+			if c.Free {
+				r.freeMember(c, at)
+				continue
+			}
+			for _, k := range phases {
+				if _, given := r.root.find(at.with(k)); given {
+					r.report(at.with(k), fmt.Sprintf("is already fixed by chain %s", c.Name), "remove it: a locked chain starts on its libration centre, which has no phase")
+				}
+			}
 			if i > 0 {
 				for _, k := range [2]string{"period", "semimajor_axis"} {
 					if _, given := r.root.find(at.with(k)); given {
@@ -51,9 +60,22 @@ func (r *reader) structure(s *Scenario) {
 			}
 		}
 	}
+	if s.Run.Regime == Adiabatic {
+		for _, c := range s.Chains {
+			if c.Free {
+				r.report(path{"chain", c.Name, "state"}, "is free, and the adiabatic regime follows no angle that may circulate", `write regime = "resolved", or state = "locked" with an offset`)
+			}
+		}
+	}
 	for _, o := range s.Orbiters {
 		at := path{"orbiter", o.Name}
-		if _, locked := member[o.Name]; !locked && !r.hasOrbit(at) && !r.membersUnsure {
+		_, linked := member[o.Name]
+		for _, k := range phases {
+			if _, given := r.root.find(at.with(k)); given && !linked && !r.membersUnsure {
+				r.report(at.with(k), "has no effect outside a chain", "remove it: without a resonance the phases do not matter")
+			}
+		}
+		if !linked && !r.hasOrbit(at) && !r.membersUnsure {
 			r.report(at.with("period"), "is missing", `add period = "NUMBER d" or semimajor_axis = "NUMBER km", or make it a member of a chain`)
 		}
 		if o.Eccentricity >= mostEccentric && withTide(s.Central, o) {
@@ -64,6 +86,22 @@ func (r *reader) structure(s *Scenario) {
 		}
 	}
 	r.judged(s)
+}
+
+// phases are the angles that members of a free chain give.
+var phases = [2]string{"pericentre", "mean_longitude"}
+
+// freeMember reports what an orbiter in a free chain lacks.
+func (r *reader) freeMember(c Chain, at path) {
+	if !r.hasOrbit(at) {
+		r.report(at.with("period"), "is missing", fmt.Sprintf(`add period = "NUMBER d" or semimajor_axis = "NUMBER km": chain %s is free`, c.Name))
+	}
+	for _, name := range [3]string{"eccentricity", phases[0], phases[1]} {
+		if _, given := r.root.find(at.with(name)); !given {
+			k := keyNamed(orbiterKeys, name)
+			r.report(at.with(name), "is missing", fmt.Sprintf("add %s: chain %s is free", sample(k), c.Name))
+		}
+	}
 }
 
 func (r *reader) hasOrbit(at path) bool {

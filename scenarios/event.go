@@ -6,7 +6,8 @@ import "tidekiln/thermal"
 const (
 	EventRocheLimit        = "roche-limit"        // pericentre inside the Roche limit; ends the history
 	EventOrbitsCross       = "orbits-cross"       // two neighbours' orbits meet; ends the history
-	EventResonanceLeft     = "resonance-left"     // a chain lost its lock; ends the history
+	EventResonanceLeft     = "resonance-left"     // a chain lost its lock; ends the history of the adiabatic regime
+	EventResonanceEntered  = "resonance-entered"  // a circulating argument librates, in the resolved regime
 	EventEccentricityLimit = "eccentricity-limit" // nearly parabolic; ends the history
 
 	EventLibrationOverstable = "libration-overstable" // a growing libration is wide
@@ -17,6 +18,6 @@ const (
 
 // eventNames are the names a trigger may give.
 var eventNames = append([]string{
-	EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventEccentricityLimit,
+	EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventResonanceEntered, EventEccentricityLimit,
 	EventLibrationOverstable, EventFoldNear, EventLibrationsCross, EventCentreUnstable,
 }, thermal.EventNames()...)

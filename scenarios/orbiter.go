@@ -14,11 +14,15 @@ var orbiterKeys = []key.Key{
 	{Name: "radius", Kind: key.Quantity, Unit: "km", Range: key.Positive(), Fixed: true,
 		Meaning: "mean radius"},
 	{Name: "period", Kind: key.Quantity, Unit: "d", Range: key.Positive(), Optional: true, Fixed: true,
-		Meaning: "mean orbital period 2π/(dλ/dt) at the start; this or semimajor_axis, of an orbiter outside a chain or the innermost of one"},
+		Meaning: "mean orbital period 2π/(dλ/dt) at the start; this or semimajor_axis, of an orbiter outside a chain, the innermost of a locked one and every member of a free one"},
 	{Name: "semimajor_axis", Kind: key.Quantity, Unit: "km", Range: key.Positive(), Optional: true, Fixed: true,
 		Meaning: "semi-major axis at the start, in place of period"},
 	{Name: "eccentricity", Kind: key.Number, Range: key.From(0, 1), Optional: true, Fixed: true,
-		Meaning: "eccentricity at the start, 0 if not given, below 0.95 with a tide; a member of a chain has its forced one and gives none"},
+		Meaning: "eccentricity at the start, 0 if not given, below 0.95 with a tide; a member of a locked chain has its forced one and gives none"},
+	{Name: "pericentre", Kind: key.Quantity, Unit: "deg", Optional: true, Fixed: true,
+		Meaning: "longitude of pericentre at the start, of a member of a free chain"},
+	{Name: "mean_longitude", Kind: key.Quantity, Unit: "deg", Optional: true, Fixed: true,
+		Meaning: "mean longitude at the start, of a member of a free chain"},
 	{Name: "interior", Kind: key.Table, Family: thermal.Interiors, Optional: true, Fixed: true,
 		Meaning: "interior model; without it the body raises no tide in itself"},
 }
@@ -46,6 +50,8 @@ func (r *reader) orbiters(n *node, top *scope) []Orbiter {
 		o.Period, _ = v.Map["period"].(float64)
 		o.SemimajorAxis, _ = v.Map["semimajor_axis"].(float64)
 		o.Eccentricity, _ = v.Map["eccentricity"].(float64)
+		o.Pericentre, _ = v.Map["pericentre"].(float64)
+		o.MeanLongitude, _ = v.Map["mean_longitude"].(float64)
 		o.Interior, _ = v.Map["interior"].(key.Values)
 		if child.table["period"] != nil && child.table["semimajor_axis"] != nil {
 			r.report(at.with("semimajor_axis"), "period and semimajor_axis are both given", "remove one: each fixes the other")
@@ -55,7 +61,9 @@ func (r *reader) orbiters(n *node, top *scope) []Orbiter {
 	return all
 }
 
-func (o Orbiter) declared(inChain bool) key.Values {
+// declared gives the values back as the keys declare them; chain is the one the
+// orbiter is a member of, or nil.
+func (o Orbiter) declared(chain *Chain) key.Values {
 	v := map[string]any{"mass": o.Mass, "radius": o.Radius}
 	if o.Period > 0 {
 		v["period"] = o.Period
@@ -63,8 +71,11 @@ func (o Orbiter) declared(inChain bool) key.Values {
 	if o.SemimajorAxis > 0 {
 		v["semimajor_axis"] = o.SemimajorAxis
 	}
-	if !inChain {
+	if chain == nil || chain.Free {
 		v["eccentricity"] = o.Eccentricity
+	}
+	if chain != nil && chain.Free {
+		v["pericentre"], v["mean_longitude"] = o.Pericentre, o.MeanLongitude
 	}
 	if o.Interior.Law != "" {
 		v["interior"] = o.Interior

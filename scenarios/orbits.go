@@ -24,7 +24,7 @@ func (r *reader) layout(s *Scenario) {
 		byName[o.Name] = o
 	}
 	for _, c := range s.Chains {
-		r.lock(c, primary, byName, places)
+		r.startChain(c, primary, byName, places)
 	}
 	for _, o := range s.Orbiters {
 		if _, ok := places[o.Name]; ok || chainOf(s.Chains, o.Name) >= 0 {
@@ -67,15 +67,18 @@ func (r *reader) layout(s *Scenario) {
 	}
 }
 
-// lock places the members of a chain on its forced equilibrium.
-func (r *reader) lock(c Chain, primary orbit.Primary, byName map[string]Orbiter, places map[string]place) {
-	inner := byName[c.Members[0]]
-	start := orbit.LockedStart{Primary: primary, Ratios: c.Ratios, Offset: c.Offset, Period: inner.Period, SemimajorAxis: inner.SemimajorAxis}
+// startChain places the members of a chain where it starts.
+func (r *reader) startChain(c Chain, primary orbit.Primary, byName map[string]Orbiter, places map[string]place) {
+	var members []Orbiter
 	for _, m := range c.Members {
-		start.Masses = append(start.Masses, byName[m].Mass)
+		members = append(members, byName[m])
 	}
-	chain, y, err := orbit.Lock(start)
-	if err != nil {
+	chain, y, err := c.Start(primary, members)
+	switch {
+	case err != nil && c.Free:
+		r.report(path{"chain", c.Name, "members"}, "the chain has no start: "+err.Error(), "check the elements of its members")
+		return
+	case err != nil:
 		r.report(path{"chain", c.Name, "offset"}, "the chain has no locked start: "+err.Error(),
 			"move the offset away from 0, as a rule to the negative side, or check masses and ratios")
 		return
@@ -86,6 +89,29 @@ func (r *reader) lock(c Chain, primary orbit.Primary, byName map[string]Orbiter,
 		e := chain.Elements(k, y, rates)
 		places[m] = place{period: 2 * math.Pi / e.MeanMotion, axis: e.SemimajorAxis, eccentricity: e.Eccentricity}
 	}
+}
+
+// Start returns the chain and its state as the members, innermost first, start
+// it: on the forced equilibrium, or from their elements if it is free.
+func (c Chain) Start(primary orbit.Primary, members []Orbiter) (*orbit.Chain, []float64, error) {
+	if c.Free {
+		s := orbit.FreeStart{Primary: primary, Ratios: c.Ratios}
+		for _, o := range members {
+			s.Members = append(s.Members, orbit.FreeMember{
+				Mass: o.Mass, Period: o.Period, SemimajorAxis: o.SemimajorAxis,
+				Eccentricity: o.Eccentricity, Pericentre: o.Pericentre, MeanLongitude: o.MeanLongitude,
+			})
+		}
+		return orbit.Free(s)
+	}
+	s := orbit.LockedStart{Primary: primary, Ratios: c.Ratios, Offset: c.Offset}
+	for k, o := range members {
+		s.Masses = append(s.Masses, o.Mass)
+		if k == 0 {
+			s.Period, s.SemimajorAxis = o.Period, o.SemimajorAxis
+		}
+	}
+	return orbit.Lock(s)
 }
 
 func (r *reader) nearness(o Orbiter, p place, primary orbit.Primary) {

@@ -123,9 +123,11 @@ var problemCases = []struct{ name, old, new, want string }{
 	{"solidus above liquidus", `solidus = "1600 K"`, `solidus = "2600 K"`, `base.toml:22: orbiter.Cinder.interior.solidus: solidus 2600 K is not below the liquidus 2000 K
   hint: give the temperature at which melting begins, then the one at which it is complete`},
 	{"regime of a later version", `span = "100 Myr"`, "span = \"100 Myr\"\nregime = \"auto\"", `base.toml:4: run.regime: "auto" is not available in this version
-  hint: write regime = "adiabatic"`},
+  hint: write regime = "adiabatic" or regime = "resolved"`},
 	{"unknown regime", `span = "100 Myr"`, "span = \"100 Myr\"\nregime = \"fast\"", `base.toml:4: run.regime: "fast" is not one of its choices
-  hint: choose one of adiabatic`},
+  hint: choose one of adiabatic, resolved`},
+	{"method without resolving", `span = "100 Myr"`, "span = \"100 Myr\"\nmethod = \"dop853\"", `base.toml:4: run.method: is the integrator of the resolved regime, and the regime is adiabatic
+  hint: remove it, or write regime = "resolved"`},
 	{"tolerance", `span = "100 Myr"`, "span = \"100 Myr\"\ntolerance = 0.1", `base.toml:4: run.tolerance: 0.1 is out of range
   hint: it must be at least 1e-12 and at most 0.001`},
 	{"steps", `span = "100 Myr"`, "span = \"100 Myr\"\nmax_steps = 1.5", `base.toml:4: run.max_steps: 1.5 is not a whole number
@@ -195,12 +197,36 @@ base.toml:42: chain.outer.ratios[1]: "3:1" is not first order
   hint: write "2:1", the inner orbit's revolutions first`},
 	{"zero offset", `offset = "-0.70 deg/day"`, `offset = "0 deg/day"`, `base.toml:39: chain.inner.offset: is 0
   hint: at exact commensurability the forced eccentricities diverge; give a negative offset, such as "-0.5 deg/day"`},
+	{"no offset", "offset = \"-0.70 deg/day\"\n", ``, `base.toml:36: chain.inner.offset: is missing
+  hint: add offset = "NUMBER deg/day": (j+1) n_outer − j n_inner, common to a locked chain, which must give it, not 0; it fixes the outer orbits and the forced eccentricities`},
+	{"misspelt offset", `offset =`, `ofset =`, `base.toml:39: chain.inner.ofset: is not a known key
+  hint: did you mean offset?`},
+	{"free and adiabatic", "[chain.inner]\n", "[chain.inner]\nstate = \"free\"\n", `base.toml:11: orbiter.Cinder.eccentricity: is missing
+  hint: add eccentricity = NUMBER: chain inner is free
+base.toml:11: orbiter.Cinder.pericentre: is missing
+  hint: add pericentre = "NUMBER deg": chain inner is free
+base.toml:11: orbiter.Cinder.mean_longitude: is missing
+  hint: add mean_longitude = "NUMBER deg": chain inner is free
+base.toml:28: orbiter.Brine.period: is missing
+  hint: add period = "NUMBER d" or semimajor_axis = "NUMBER km": chain inner is free
+base.toml:28: orbiter.Brine.eccentricity: is missing
+  hint: add eccentricity = NUMBER: chain inner is free
+base.toml:28: orbiter.Brine.pericentre: is missing
+  hint: add pericentre = "NUMBER deg": chain inner is free
+base.toml:28: orbiter.Brine.mean_longitude: is missing
+  hint: add mean_longitude = "NUMBER deg": chain inner is free
+base.toml:37: chain.inner.state: is free, and the adiabatic regime follows no angle that may circulate
+  hint: write regime = "resolved", or state = "locked" with an offset
+base.toml:40: chain.inner.offset: is already fixed by the elements of the members
+  hint: remove it, or write state = "locked"`},
+	{"phase of a locked member", `radius = "1520 km"`, "radius = \"1520 km\"\npericentre = \"10 deg\"", `base.toml:31: orbiter.Brine.pericentre: is already fixed by chain inner
+  hint: remove it: a locked chain starts on its libration centre, which has no phase`},
+	{"phase of a lone orbiter", `period = "12 d"`, "period = \"12 d\"\nmean_longitude = \"10 deg\"", `base.toml:35: orbiter.Tern.mean_longitude: has no effect outside a chain
+  hint: remove it: without a resonance the phases do not matter`},
 	{"chain out of order", `offset = "-0.70 deg/day"`, `offset = "500 deg/day"`, `base.toml:37: chain.inner.members: Cinder and Brine are not neighbours
   hint: list members from the innermost outward, without another orbit between them`},
 	{"offset without angle", `offset = "-0.70 deg/day"`, `offset = "-0.70 /day"`, `base.toml:39: chain.inner.offset: "-0.70 /day" is a rate, but an angular rate is needed
   hint: write it in deg/day or another unit of that dimension`},
-	{"state", `ratios = ["2:1"]`, "ratios = [\"2:1\"]\nstate = \"locked\"", `base.toml:39: chain.inner.state: is not available in this version
-  hint: remove it`},
 	{"wide libration", `ratios = ["2:1"]`, "ratios = [\"2:1\"]\nlibration = \"120 deg\"", `base.toml:39: chain.inner.libration: "120 deg" is out of range
   hint: it must be at least 0 deg and below 90 deg`},
 	{"not neighbours", `period = "12 d"`, `period = "2.7 d"`, `base.toml:37: chain.inner.members: Cinder and Brine are not neighbours

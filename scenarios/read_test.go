@@ -5,8 +5,11 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"reflect"
 	"strings"
 	"testing"
+
+	"tidekiln/orbit"
 )
 
 func TestVolcanicCycleInSI(t *testing.T) {
@@ -220,5 +223,58 @@ func TestLibrationOfAChain(t *testing.T) {
 	}
 	if ids[0] != ids[1] || ids[0] == ids[2] {
 		t.Errorf("fingerprints %v, want the first two equal and the third another", ids)
+	}
+}
+
+// A free chain gives its members' elements, and its canonical form reads back
+// the same.
+func TestFreeChain(t *testing.T) {
+	const src = `[run]
+span = "1 kyr"
+regime = "resolved"
+[central]
+name = "Ombra"
+mass = "1.6e27 kg"
+radius = "66000 km"
+[orbiter.Cinder]
+mass = "9.1e22 kg"
+radius = "1790 km"
+period = "1.9 d"
+eccentricity = 0.005
+pericentre = "-30 deg"
+mean_longitude = "0.5 rad"
+[orbiter.Brine]
+mass = "4.4e22 kg"
+radius = "1520 km"
+semimajor_axis = "665000 km"
+eccentricity = 0.01
+pericentre = "180 deg"
+mean_longitude = "400 deg"
+[chain.pair]
+members = ["Cinder", "Brine"]
+ratios = ["2:1"]
+state = "free"
+`
+	s := mustRead(t, src)
+	c := s.Chains[0]
+	if !c.Free || c.Offset != 0 || s.Run.Regime != Resolved || s.Run.Method != "" || s.Run.MaxSteps != 1e9 {
+		t.Errorf("chain %+v, run %+v", c, s.Run)
+	}
+	if o := s.Orbiters[0]; math.Abs(o.Pericentre+math.Pi/6) > 1e-16 || o.MeanLongitude != 0.5 || o.Eccentricity != 0.005 {
+		t.Errorf("%+v", o)
+	}
+	again := mustRead(t, s.TOML())
+	if !reflect.DeepEqual(s, again) || s.ID() != again.ID() {
+		t.Errorf("reads back as\n%s", again.TOML())
+	}
+	chain, y, err := c.Start(orbit.Primary{Mass: s.Central.Mass, Radius: s.Central.Radius}, s.Orbiters)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := math.Atan2(y[4], y[2]) + 2*s.Orbiters[1].MeanLongitude - 0.5 - s.Orbiters[0].Pericentre; math.Abs(math.Remainder(got, 2*math.Pi)) > 1e-14 {
+		t.Errorf("arg z of member 1 misses ϖ − ψ by %g", got)
+	}
+	if chain.Members() != 2 {
+		t.Error("not a pair")
 	}
 }

@@ -15,8 +15,10 @@ var runKeys = []key.Key{
 		Meaning: "length of the history"},
 	{Name: "start", Kind: key.Quantity, Unit: "Myr", Default: 0.0, Range: key.Between(0, longest), Fixed: true,
 		Meaning: "age of the system when the history begins, for laws that depend on it; none of this version does"},
-	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic"}, Default: "adiabatic", Fixed: true,
-		Meaning: "how librations are treated: adiabatic steps over them"},
+	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic", "resolved"}, Default: "adiabatic", Fixed: true,
+		Meaning: "how librations are treated: adiabatic steps over them, for gigayears; resolved follows each at some ten steps a year, for 1e4 to 1e8 years"},
+	{Name: "method", Kind: key.Choice, Choices: []string{"splitting", "dop853"}, Optional: true, Fixed: true,
+		Meaning: "integrator of the resolved regime: splitting, the exact linear flow about the libration centre and small remainders, for chains that stay locked; dop853, for everything; without it splitting where every chain starts locked, dop853 elsewhere"},
 	{Name: "tolerance", Kind: key.Number, Default: 1e-7, Range: key.Between(1e-12, 1e-3), Fixed: true,
 		Meaning: "relative error allowed in a step"},
 	{Name: "record", Kind: key.Special, Optional: true, Fixed: true,
@@ -25,14 +27,26 @@ var runKeys = []key.Key{
 		Meaning: "seed of random phases; nothing of this version is random"},
 	{Name: "judge", Kind: key.Text, Optional: true, Fixed: true,
 		Meaning: "orbiter whose outcome is the run's; without it the innermost with a thermal state"},
-	{Name: "max_steps", Kind: key.Integer, Default: int64(1e6), Range: key.AtLeast(1), Fixed: true,
-		Meaning: "steps after which the run ends unfinished"},
+	{Name: "max_steps", Kind: key.Integer, Optional: true, Range: key.AtLeast(1), Fixed: true,
+		Meaning: "steps after which the run ends unfinished; without it 1e6, in the resolved regime 1e9"},
 	{Name: "stop", Kind: key.Special, Optional: true, Fixed: true,
 		Meaning: `events that end the run, a list: [{ event = "NAME", body = "NAME", other = "NAME" }], bodies optional`},
 }
 
+// Regimes of a run.
+const (
+	Adiabatic = "adiabatic"
+	Resolved  = "resolved"
+)
+
+// Methods of the resolved regime.
+const (
+	Splitting = "splitting"
+	DOP853    = "dop853"
+)
+
 // laterRegimes are refused as unavailable, not as unknown.
-var laterRegimes = []string{"resolved", "auto"}
+var laterRegimes = []string{"auto"}
 
 var triggerKeys = []key.Key{
 	{Name: "event", Kind: key.Choice, Choices: eventNames, Fixed: true, Meaning: "name of the event"},
@@ -43,7 +57,7 @@ var triggerKeys = []key.Key{
 func (r *reader) run(n *node, top *scope) Run {
 	at := path{"run"}
 	if regime := n.table["regime"]; regime != nil && regime.form == textForm && contains(laterRegimes, regime.text) {
-		r.report(at.with("regime"), quote(regime.text)+" is not available in this version", `write regime = "adiabatic"`)
+		r.report(at.with("regime"), quote(regime.text)+" is not available in this version", `write regime = "adiabatic" or regime = "resolved"`)
 		n = n.clone()
 		n.drop("regime")
 	}
@@ -56,6 +70,15 @@ func (r *reader) run(n *node, top *scope) Run {
 	run.Seed, _ = v.Map["seed"].(int64)
 	run.Judge, _ = v.Map["judge"].(string)
 	run.MaxSteps, _ = v.Map["max_steps"].(int64)
+	if run.MaxSteps == 0 && n.table["max_steps"] == nil {
+		run.MaxSteps = 1e6
+		if run.Regime == Resolved {
+			run.MaxSteps = 1e9
+		}
+	}
+	if run.Method, _ = v.Map["method"].(string); run.Method != "" && run.Regime == Adiabatic {
+		r.report(at.with("method"), "is the integrator of the resolved regime, and the regime is adiabatic", `remove it, or write regime = "resolved"`)
+	}
 	if record, ok := v.Map["record"].(*node); ok {
 		run.Record = r.record(record, at.with("record"), run.Span)
 	} else if run.Span > 0 {
@@ -112,6 +135,9 @@ func (run Run) declared() key.Values {
 	v := map[string]any{
 		"span": run.Span, "start": run.Start, "regime": run.Regime, "tolerance": run.Tolerance,
 		"record": literal(run.Record.toml()), "seed": run.Seed, "max_steps": run.MaxSteps,
+	}
+	if run.Method != "" {
+		v["method"] = run.Method
 	}
 	if run.Judge != "" {
 		v["judge"] = run.Judge

@@ -21,7 +21,8 @@ type Scenario struct {
 type Run struct {
 	Span      float64 // s
 	Start     float64 // age at t = 0, s
-	Regime    string  // "adiabatic" | "resolved" | "auto"
+	Regime    string  // Adiabatic or Resolved
+	Method    string  // Splitting or DOP853, "" for the choice by the chains; "" in the adiabatic regime
 	Tolerance float64 // relative, per step
 	Record    Record
 	Seed      int64
@@ -48,25 +49,28 @@ type Central struct {
 }
 
 // Orbiter is a moon or planet. Exactly one of Period and SemimajorAxis is set
-// for an orbiter outside a chain and for a chain's innermost member; both are
-// zero for a chain's other members.
+// for an orbiter outside a chain, for members of a free chain and for a locked
+// chain's innermost member; both are zero for a locked chain's other members.
 type Orbiter struct {
 	Name          string
 	Mass          float64    // kg
 	Radius        float64    // m
 	Period        float64    // s, mean orbital period 2π/(dλ/dt)
 	SemimajorAxis float64    // m
-	Eccentricity  float64    // start value; chain members: forced, so 0 here
+	Eccentricity  float64    // start value; members of a locked chain: forced, so 0 here
+	Pericentre    float64    // ϖ at the start, rad; members of a free chain only
+	MeanLongitude float64    // λ at the start, rad; members of a free chain only
 	Interior      key.Values // of thermal.Interiors; Law "" without one
 }
 
-// Chain is a set of neighbours, ordered outward, locked in first-order
+// Chain is a set of neighbours, ordered outward, linked by first-order
 // resonances: Ratios[r] = j for (j+1):j between Members[r] and Members[r+1].
 type Chain struct {
 	Name      string
 	Members   []string
 	Ratios    []int
-	Offset    float64 // (j+1) n_outer − j n_inner, common to the chain, rad/s
+	Free      bool    // starts from the elements of its members instead of the forced equilibrium
+	Offset    float64 // (j+1) n_outer − j n_inner, common to a locked chain, rad/s
 	Libration float64 // half-width of each libration at the start, in its largest angle, rad
 }
 

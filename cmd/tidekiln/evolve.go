@@ -111,9 +111,9 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 // ending is how the command ends after a history was written.
 func ending(ctx context.Context, h *evolve.History, out string) error {
 	switch h.Status {
-	case evolve.Stopped:
+	case evolve.StatusFailed:
 		return &exit{exitStopped, fmt.Errorf("%s: %s; the history up to there is in %s", h.Status, h.Reason, out)}
-	case evolve.Interrupted:
+	case evolve.StatusInterrupted:
 		code := exitInterrupted
 		if errors.Is(context.Cause(ctx), errCtrlC) {
 			code = exitCtrlC
@@ -182,7 +182,7 @@ func (e *evolution) already(runID string) (bool, error) {
 	switch {
 	case stored.RunID != runID:
 		return false, request(fmt.Errorf("%s holds another history (run %s): choose another --out, or --replace it", e.out, stored.RunID))
-	case stored.Status == evolve.Interrupted:
+	case stored.Status == evolve.StatusInterrupted:
 		return false, request(fmt.Errorf("%s holds this history up to %.6g Myr, where it was interrupted: go on with --from %s --out NEW, or --replace it", e.out, stored.End/evolve.Megayear, e.out))
 	}
 	if !e.quiet {

@@ -326,7 +326,7 @@ func TestSignals(t *testing.T) {
 			continue
 		}
 		s, err := evolve.Describe(filepath.Join(dir, "out"))
-		if err != nil || s.Status != evolve.Interrupted || !(s.End > 0) {
+		if err != nil || s.Status != evolve.StatusInterrupted || !(s.End > 0) {
 			t.Fatalf("%v: %+v, %v", signal, s, err)
 		}
 		code, _, text := call(t, dir, "evolve", "--from", "out", "--span", fmt.Sprintf("%g Myr", s.End/evolve.Megayear+100))

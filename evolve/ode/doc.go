@@ -77,6 +77,13 @@
 // method: there it is the error of the step multiplied by ω. Output between steps
 // comes from the stages alone.
 //
+// # Following an oscillation about a moving centre
+//
+// A [Split] system says which part of f oscillates; [Splitting] follows that part
+// by its exact linear flow about the centre, so that steps of a third of the
+// shortest period are accurate while the oscillation is narrow, and takes the slow
+// part in kicks.
+//
 // # What it will not do
 //
 // It does not go backward, use more than one thread, exploit sparsity (matrices

@@ -29,12 +29,18 @@ type Events struct {
 	noise []float64 // what a value must exceed to have left the zero it started on
 	y     []float64
 	found []Occurrence
+	ends  bool
 }
 
 // NewEvents prepares the search for a list of events; Reset must follow.
 func NewEvents(list []Event) *Events {
 	return &Events{list: slices.Clone(list), side: make([]int8, len(list)), last: make([]float64, len(list)), noise: make([]float64, len(list))}
 }
+
+// AtEnds makes Locate look for changes of sign at the ends of steps alone, for
+// steps short beside the times of the events: the insides of steps are then not
+// computed unless something happened.
+func (e *Events) AtEnds() { e.ends = true }
 
 // Reset forgets the past and takes (t, y) as the start; an event whose value is 0
 // there does not occur by leaving 0. Those that have just occurred at this state
@@ -70,6 +76,9 @@ func (e *Events) Locate(seg *Segment) []Occurrence {
 	e.found = e.found[:0]
 	before := 0.0
 	for j := range seg.form.s {
+		if e.ends && j < seg.form.s-1 {
+			continue
+		}
 		theta, t := seg.form.c[j], seg.T0+seg.form.c[j]*seg.h
 		if j == seg.form.s-1 {
 			t = seg.T1
