@@ -224,3 +224,199 @@ func TestResolvedDriftIsTheAdiabaticOneForLong(t *testing.T) {
 		}
 	}
 }
+
+// runLibrating runs a history whose chains start displaced.
+func runLibrating(t testing.TB, s *scenarios.Scenario, width float64) *History {
+	t.Helper()
+	r, err := begin(s, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i := range r.p.groups {
+		if g := &r.p.groups[i]; g.chain != nil {
+			displace(g, r.y, width)
+		}
+	}
+	*r.ledger = *newLedger(r.p, r.t, r.y)
+	if err := r.start(); err != nil {
+		t.Fatal(err)
+	}
+	for r.h.Status == "" {
+		if err := r.advance(); err != nil {
+			t.Fatal(err)
+		}
+	}
+	r.finish()
+	return r.h
+}
+
+// A molten moon's state by blocks of 2000, 1000 and 500 yr against blocks of
+// 100 yr: of second order. (Half an order for the phase of the libration at which
+// blocks end.)
+func TestInteriorsAreHeldToSecondOrder(t *testing.T) {
+	s := shipped(t, "volcanic-cycle", scenarios.Edit{Path: "run.regime", Value: "resolved"})
+	p, y, err := NewSystem(s)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := p.still(0, y); err != nil {
+		t.Fatal(err)
+	}
+	displace(&p.groups[0], y, 0.01)
+	const span = 2e4 * orbit.Year
+	enthalpy := func(block float64) float64 {
+		o, err := newSplit(s)
+		if err != nil {
+			t.Fatal(err)
+		}
+		in, err := ode.NewSplitting(o, ode.SplittingOptions{RTol: 1e-7, ATol: p.resolvedTolerances(), Block: block})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := in.Start(0, y); err != nil {
+			t.Fatal(err)
+		}
+		for in.T() < span {
+			if _, err := in.Step(span); err != nil {
+				t.Fatal(err)
+			}
+		}
+		return in.State()[p.bodies[0].at]
+	}
+	ref := enthalpy(100 * orbit.Year)
+	last := 0.0
+	for i, years := range []float64{4000, 2000, 1000, 500} {
+		miss := math.Abs(enthalpy(years*orbit.Year)/ref - 1)
+		t.Logf("blocks of %g yr: enthalpy off by %.1e", years, miss)
+		if i > 0 && i < 3 {
+			if order := math.Log2(last / miss); order < 1.5 {
+				t.Errorf("blocks of %g yr: order %.2f, want 2", years, order)
+			}
+		}
+		last = miss
+	}
+}
+
+// The books of a librating history close, and their rows lie on the cadence.
+func TestLibratingHistory(t *testing.T) {
+	for _, method := range []string{scenarios.Splitting, scenarios.DOP853} {
+		s := shipped(t, "volcanic-cycle", scenarios.Edit{Path: "run.regime", Value: "resolved"}, scenarios.Edit{Path: "run.method", Value: method},
+			scenarios.Edit{Path: "run.span", Value: "2 kyr"}, scenarios.Edit{Path: "run.record", Value: "10 yr"})
+		h := runLibrating(t, s, 0.05)
+		if h.Status != Complete || h.Suspect || h.OrbitOutcome != OrbitLocked {
+			t.Errorf("%s: %s %s, outcome %s, closures %v", method, h.Status, h.Reason, h.OrbitOutcome, h.Closure)
+		}
+		if got := h.Rows("resonances"); got != 201*2 {
+			t.Errorf("%s: %d rows of resonances, want 402", method, got)
+		}
+		// A part in twenty of e, between rows that see every phase.
+		x := h.Bodies[0].Eccentricity
+		if swing := (x.Max - x.Min) / (x.Max + x.Min); swing < 0.03 || swing > 0.2 {
+			t.Errorf("%s: e swings by %.2g", method, swing)
+		}
+	}
+}
+
+// pairOf is a pair near 2:1 whose inner moon the tide drives outward. Free, its
+// inner eccentricity is free too, above the forced one.
+const pairOf = `[run]
+span = "6 kyr"
+regime = "resolved"
+record = "0.1 kyr"
+[central]
+name = "Ombra"
+mass = "1.6e27 kg"
+radius = "66000 km"
+tide = { law = "constant-q", k2_over_Q = 0.08 }
+[orbiter.Swift]
+mass = "9e22 kg"
+radius = "1800 km"
+period = "2 d"
+eccentricity = 0.02
+pericentre = "10 deg"
+mean_longitude = "0 deg"
+[orbiter.Still]
+mass = "1.3e23 kg"
+radius = "2500 km"
+period = "4.04 d"
+eccentricity = 0
+pericentre = "0 deg"
+mean_longitude = "70 deg"
+[chain.pair]
+members = ["Swift", "Still"]
+ratios = ["2:1"]
+state = "free"
+`
+
+func read(t testing.TB, src string, edits ...scenarios.Edit) *scenarios.Scenario {
+	t.Helper()
+	s, err := scenarios.Read("test.toml", []byte(src), edits...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
+
+// A free pair below the critical eccentricity, √6 (m′α|f₁|/(3MS))^{1/3} = 0.054 for
+// these masses (4.4 of Henrard & Lemaitre's model), drifts together and is caught;
+// once, and it stays.
+func TestFreePairIsCaught(t *testing.T) {
+	s := read(t, pairOf)
+	h := run1(t, s)
+	var entered []Event
+	for _, e := range h.Events {
+		switch e.Name {
+		case EventResonanceEntered:
+			entered = append(entered, e)
+		case EventResonanceLeft:
+			t.Errorf("left at %g yr", e.Time/orbit.Year)
+		}
+	}
+	if len(entered) != 1 || entered[0].Body != "Swift" || entered[0].Other != "Still" || entered[0].Ends {
+		t.Fatalf("events %+v", h.Events)
+	}
+	if h.Status != Complete || h.OrbitOutcome != OrbitLocked || h.Suspect {
+		t.Errorf("%s, %s, outcome %s, closures %v", h.Status, h.Reason, h.OrbitOutcome, h.Closure)
+	}
+	// Caught, the eccentricity grows: e² gains at least the drift since.
+	if e := h.Bodies[0].Eccentricity; e.Max < 0.03 {
+		t.Errorf("e reaches %g", e.Max)
+	}
+	// The same, stopped by the event, and with a change of the rules by it.
+	stopped := run1(t, read(t, pairOf, scenarios.Edit{Path: "run.stop", Value: `[{ event = "resonance-entered" }]`}))
+	if stopped.Status != Ended || stopped.End != entered[0].Time {
+		t.Errorf("stopped: %s at %g, want %g", stopped.Status, stopped.End, entered[0].Time)
+	}
+	changed := run1(t, read(t, pairOf+"[[change]]\nwhen = { event = \"resonance-entered\" }\nset = { central.tide.k2_over_Q = 0 }\n"))
+	if changed.Status != Complete || !(changed.Bodies[0].Eccentricity.Max < h.Bodies[0].Eccentricity.Max) {
+		t.Errorf("without a tide from then on: %s, e up to %g", changed.Status, changed.Bodies[0].Eccentricity.Max)
+	}
+}
+
+// A locked pair that drifts apart keeps the action of its libration while the
+// forced eccentricity falls below it: its argument goes round, and the history goes
+// on.
+func TestLibratingPairIsLost(t *testing.T) {
+	s := read(t, pairOf, scenarios.Edit{Path: "chain.pair.state", Value: "locked"}, scenarios.Edit{Path: "chain.pair.offset", Value: "-0.7 deg/day"},
+		scenarios.Edit{Path: "orbiter.Swift.mass", Value: "1e21 kg"}, scenarios.Edit{Path: "orbiter.Swift.radius", Value: "500 km"}, scenarios.Edit{Path: "central.tide.k2_over_Q", Value: "1"},
+		scenarios.Edit{Path: "orbiter.Swift.eccentricity", Unset: true}, scenarios.Edit{Path: "orbiter.Swift.pericentre", Unset: true},
+		scenarios.Edit{Path: "orbiter.Swift.mean_longitude", Unset: true}, scenarios.Edit{Path: "orbiter.Still.eccentricity", Unset: true},
+		scenarios.Edit{Path: "orbiter.Still.pericentre", Unset: true}, scenarios.Edit{Path: "orbiter.Still.mean_longitude", Unset: true},
+		scenarios.Edit{Path: "orbiter.Still.period", Unset: true})
+	for _, method := range []string{scenarios.Splitting, scenarios.DOP853} {
+		s.Run.Method = method
+		h := runLibrating(t, s, 0.5)
+		left := 0
+		for _, e := range h.Events {
+			if e.Name == EventResonanceLeft {
+				left++
+				if e.Ends || e.Body != "Swift" {
+					t.Errorf("%s: %+v", method, e)
+				}
+			}
+		}
+		if left != 1 || h.Status != Complete || h.OrbitOutcome != OrbitLeft || h.End != s.Run.Span {
+			t.Errorf("%s: left %d times, %s %s, outcome %s, events %+v", method, left, h.Status, h.Reason, h.OrbitOutcome, h.Events)
+		}
+	}
+}
