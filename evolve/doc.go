@@ -7,8 +7,12 @@
 // [Survey] says what a scenario means before any integration; [Write] and
 // [Load] turn a history into a dataset and back.
 //
-// The regime is adiabatic: an L-stable method steps far over the librations of
-// a resonance and thereby keeps every chain on its slowly moving libration
-// centre. It damps a libration that a resolved integration would keep, so a
-// history says nothing of how wide an angle librates.
+// Two regimes integrate the same equations. The adiabatic one steps far over the
+// librations of a resonance with an L-stable method and thereby keeps every chain
+// on its slowly moving libration centre; it damps a libration that is there, so
+// such a history says nothing of how wide an angle librates. The resolved one
+// follows every libration, at some ten steps a year, of chains that start locked
+// and at rest or free, from elements: by a splitting into librations about their
+// centre and drift, or by DOP853 where angles circulate. It tells when resonances
+// are entered and left, by the arguments of the strongest members.
 package evolve
