@@ -202,12 +202,14 @@ func (e *encounter) captured(t *testing.T, from [2]float64, time float64) (libra
 	if k != 0 || sign != 1 {
 		t.Fatalf("member %d is the strongest, centre %g; want the light one inside, about 0", k, sign)
 	}
-	a := argument{group: g, member: k, centre: sign, side: y[4] < 0}
+	a := argument{group: g, member: k, centre: sign}
+	a.re, a.im = a.at(y)
 	for in.T() < time {
-		if _, err := in.Step(time); err != nil {
+		seg, err := in.Step(time)
+		if err != nil {
 			t.Fatal(err)
 		}
-		a.step(in.State())
+		a.step(seg, in.State())
 	}
 	return a.librates, in.State()
 }

@@ -65,6 +65,7 @@ var resonancesTable = newTable("resonances", "one row a time and resonance", []s
 	float("offset_deg_per_day", "deg/d", "(j+1) n_outer − j n_inner", "", func(s *resonanceSample) float64 { return s.offset / degreePerDay }),
 	turn("angle_deg", "resonance angle ψ_r − ψ_1 between this pair and the chain's first (the Laplace angle of a chain of three)", "the first pair of a chain", func(s *resonanceSample) float64 { return s.angle / degree }),
 	float("half_width_deg", "deg", "half-width of the libration of this angle, all modes in step, at most 180; for a chain's first pair that of its angle to the pericentre of either member, the wider", noLibration, func(s *resonanceSample) float64 { return s.width / degree }),
+	rough("argument_deg", "deg", "resonance argument ψ_r − ϖ of the member whose eccentricity the resonance drives faster, between −180 and 180", "", func(s *resonanceSample) float64 { return s.argument / degree }),
 )
 
 const noLibration = "the libration centre has become unstable"
@@ -90,7 +91,7 @@ var systemTable = newTable("system", "one row a time: the ledger of energy and a
 	text("run_id", "identity of the history", "", func(s *systemSample) string { return s.runID }),
 	rough("time_Myr", "Myr", "time since the start of the history", "", func(s *systemSample) float64 { return s.t }),
 	truth("on_grid", "a row of the asked cadence, not an extra one", func(s *systemSample) bool { return s.grid }),
-	text("regime", "adiabatic: librations are stepped over and carried beside the state", "", func(s *systemSample) string { return s.regime }),
+	text("regime", "adiabatic: librations are stepped over and carried beside the state; resolved: they are followed", "", func(s *systemSample) string { return s.regime }),
 	float("orbital_energy_J", "J", "the Hamiltonian of all orbits, resonances and oblateness included", "", func(s *systemSample) float64 { return s.orbital }),
 	float("internal_energy_J", "J", "internal energy of all bodies with a thermal state, from an arbitrary zero", "no body has a thermal state", func(s *systemSample) float64 { return when(s.hasThermalState, s.internal) }),
 	float("tidal_heat_J", "J", "tidal heat made in all orbiters since the start", "no orbiter has an interior", func(s *systemSample) float64 { return when(s.hasInterior, s.heat) }),

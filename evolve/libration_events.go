@@ -116,7 +116,7 @@ func (r *run) occurred(seg *ode.Segment) []occurrence {
 	}
 	for i := range r.args {
 		a := &r.args[i]
-		if name := a.step(r.integ.State()); name != "" {
+		if name := a.step(seg, r.integ.State()); name != "" {
 			list = append(list, occurrence{Occurrence: ode.Occurrence{T: seg.T1}, passage: true, told: a.passed(r.h.RunID, name, seg.T1, r.h.Scenario.Run.Stop)})
 		}
 	}

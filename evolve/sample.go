@@ -46,6 +46,8 @@ type resonanceSample struct {
 	offset              float64
 	angle               float64 // NaN for a chain's first pair
 	width               float64 // half-width of its libration, rad; NaN if unknown
+	argument            float64 // rad
+	strongest           int     // member whose argument it is
 }
 
 // systemSample is the ledger at one time, SI.
@@ -84,8 +86,10 @@ func newSampler(p *System, carried *carrier, runID string) *sampler {
 	for i := range p.groups {
 		g := &p.groups[i]
 		for r := 0; r+1 < len(g.body); r++ {
+			strongest, _ := g.chain.Strongest(r)
 			s.resonances = append(s.resonances, resonanceSample{
-				moment: moment{runID: runID}, chain: g.name, j: g.chain.Commensurability(r),
+				strongest: strongest,
+				moment:    moment{runID: runID}, chain: g.name, j: g.chain.Commensurability(r),
 				inner: p.bodies[g.body[r]].name, outer: p.bodies[g.body[r+1]].name,
 			})
 		}
@@ -137,6 +141,8 @@ func (s *sampler) take(t float64, y []float64, b books, sums []float64, myr floa
 			i++
 			at(&o.moment)
 			o.offset, o.angle, o.width = g.rates.Offset[r], math.NaN(), math.NaN()
+			re, im := g.chain.Argument(r, o.strongest, y[g.at:g.at+g.Dim()])
+			o.argument = math.Atan2(im, re)
 			if r > 0 {
 				o.angle = g.chain.Angle(r, y[g.at:g.at+g.Dim()])
 			}
