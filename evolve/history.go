@@ -180,7 +180,13 @@ func (r *run) start() error {
 	var err error
 	if r.resolved {
 		r.integ, err = r.p.resolving(r.y)
-		r.args = r.p.arguments(r.y)
+		list := r.p.arguments(r.y)
+		for i := range r.args { // a change of the rules alters no orbit
+			group := list[i].group
+			list[i] = r.args[i]
+			list[i].group = group
+		}
+		r.args = list
 	} else {
 		r.integ, err = ode.NewRadau(r.p, r.p.options())
 	}
@@ -378,9 +384,10 @@ const (
 // some 10⁴ additions.
 const rounding = 1e-10
 
-// sampling is the same where tides act as kicks, which sample a libration a few
-// times a turn.
-const sampling = 1e-8
+// passage is the same where librations are resolved: they pass angular momentum
+// to and fro between orbits some 10⁵ times faster than tides bring it, by steps
+// whose length is bounded whatever the tolerance.
+const passage = 1e-5
 
 // finish draws the conclusions.
 func (r *run) finish() {
@@ -398,7 +405,7 @@ func (r *run) finish() {
 	h.Closure.Energy, h.Closure.Momentum = c.energy, c.momentum
 	bound := math.Max(closureFactor*h.Scenario.Run.Tolerance, rounding)
 	if r.resolved {
-		bound = math.Max(resolvedClosureFactor*h.Scenario.Run.Tolerance, sampling)
+		bound = math.Max(resolvedClosureFactor*h.Scenario.Run.Tolerance, passage)
 	}
 	h.Suspect = c.energy > bound || c.momentum > bound
 	h.end = end{state: r.y, ledger: r.ledger, changes: r.made}

@@ -1,7 +1,6 @@
 package ode
 
 import (
-	"fmt"
 	"math"
 	"testing"
 )
@@ -34,59 +33,52 @@ func (chain) Kinks() int                                 { return 1 }
 func (chain) Kink(i int, t float64, y []float64) float64 { return y[0] + 100 }
 func (chain) Cross(i int, up bool)                       {}
 
-func startChain(tb testing.TB, stages int) *Radau {
-	fast := make([]bool, 11)
-	fast[3], fast[4] = true, true
-	return mustRadau(tb, chain{}, Options{RTol: 1e-8, ATol: same(11, 1e-8), Stages: stages,
-		Odd: fast, OddTime: 1, Fast: fast, ProjectionStep: 1e-3}, 0, same(11, 0.1))
+func startChain(tb testing.TB, f formula) Integrator {
+	opt := Options{RTol: 1e-8, ATol: same(11, 1e-8)}
+	if f != dop {
+		opt.Fast = make([]bool, 11)
+		opt.Fast[3], opt.Fast[4] = true, true
+		opt.Odd, opt.OddTime, opt.ProjectionStep = opt.Fast, 1, 1e-3
+	}
+	return f.start(tb, chain{}, opt, 0, same(11, 0.1))
 }
 
 func TestStepDoesNotAllocate(t *testing.T) {
-	r := startChain(t, 0)
-	e := NewEvents([]Event{{Name: "never", Value: func(t float64, y []float64) float64 { return y[0] + 50 }}})
-	e.Reset(r.T(), r.State())
-	y, q := make([]float64, 11), make([]float64, 2)
-	n := testing.AllocsPerRun(200, func() {
-		seg, err := r.Step(1e9)
-		if err != nil {
-			t.Fatal(err)
+	for _, f := range append([]formula{{}}, formulas...) {
+		r := startChain(t, f)
+		e := NewEvents([]Event{{Name: "never", Value: func(t float64, y []float64) float64 { return y[0] + 50 }}})
+		e.Reset(r.T(), r.State())
+		y, q := make([]float64, 11), make([]float64, 2)
+		n := testing.AllocsPerRun(200, func() {
+			seg, err := r.Step(1e9)
+			if err != nil {
+				t.Fatal(err)
+			}
+			mid := (seg.T0 + seg.T1) / 2
+			seg.Eval(mid, y)
+			seg.QuadraturesTo(mid, q)
+			if len(e.Locate(seg)) != 0 {
+				t.Fatal("an event that cannot occur did")
+			}
+		})
+		if n != 0 {
+			t.Errorf("%v: %g allocations a step", f, n)
 		}
-		mid := (seg.T0 + seg.T1) / 2
-		seg.Eval(mid, y)
-		seg.QuadraturesTo(mid, q)
-		if len(e.Locate(seg)) != 0 {
-			t.Fatal("an event that cannot occur did")
-		}
-	})
-	if n != 0 {
-		t.Errorf("%g allocations a step", n)
 	}
 }
 
 // Nor does landing on a kink.
 func TestKinkDoesNotAllocate(t *testing.T) {
-	sys := &tide{levels: []float64{0.5, -0.3}}
-	r := mustRadau(t, sys, Options{RTol: 1e-8, ATol: same(2, 1e-8)}, 0, []float64{0, 0})
-	n := testing.AllocsPerRun(100, func() {
-		if _, err := r.Step(1e9); err != nil {
-			t.Fatal(err)
-		}
-	})
-	if n != 0 || r.Stats().KinksCrossed == 0 {
-		t.Errorf("%g allocations a step with %d kinks", n, r.Stats().KinksCrossed)
-	}
-}
-
-func BenchmarkStep(b *testing.B) {
-	for _, stages := range []int{3, 5} {
-		b.Run(fmt.Sprintf("stages=%d", stages), func(b *testing.B) {
-			r := startChain(b, stages)
-			for b.Loop() {
-				if _, err := r.Step(1e12); err != nil {
-					b.Fatal(err)
-				}
+	for _, f := range formulas {
+		sys := &tide{levels: []float64{0.5, -0.3}}
+		r := f.start(t, sys, Options{RTol: 1e-8, ATol: same(2, 1e-8)}, 0, []float64{0, 0})
+		n := testing.AllocsPerRun(100, func() {
+			if _, err := r.Step(1e9); err != nil {
+				t.Fatal(err)
 			}
-			b.ReportMetric(float64(r.Stats().Derivs)/float64(r.Stats().Steps), "derivs/step")
 		})
+		if n != 0 || r.Stats().KinksCrossed == 0 {
+			t.Errorf("%v: %g allocations a step with %d kinks", f, n, r.Stats().KinksCrossed)
+		}
 	}
 }

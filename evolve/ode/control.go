@@ -120,8 +120,8 @@ func (e *engine) refused(h float64, i int) error {
 // errorTooLarge answers an estimate of err ≥ 1 tolerances.
 func (e *engine) errorTooLarge(h, err, safe float64, worst int) error {
 	factor := e.control.factor(err, safe)
-	if e.stats.Steps == 0 || math.IsNaN(err) {
-		factor = 0.1
+	if e.control.hLast == 0 || math.IsNaN(err) {
+		factor = 0.1 // the guess of the first step may be far off
 	}
 	return e.shrink(h, factor, StopError{Reason: StepTooSmall, Component: worst,
 		Detail: fmt.Sprintf("the error is %.2g tolerances", err)})

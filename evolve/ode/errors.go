@@ -9,14 +9,14 @@ const (
 	StepBudget   StopReason = iota // Options.MaxSteps attempts are used up
 	StepTooSmall                   // the step needed is below Options.MinStep or below the resolution of t
 	NotFinite                      // f or its Jacobian is NaN or infinite however short the step
-	Singular                       // the Newton matrix has no inverse however short the step
+	Singular                       // the matrix of the stages has no inverse however short the step
 )
 
 var stopTexts = [...]struct{ what, hint string }{
-	StepBudget:   {"step budget used up", "raise MaxSteps, loosen the tolerance, or check for a fast oscillation that is followed instead of stepped over"},
+	StepBudget:   {"step budget used up", "raise MaxSteps, loosen the tolerance, or check for a fast part that is followed instead of stepped over, by DOP853 always"},
 	StepTooSmall: {"step too small", "check this component's tolerance, whether the state has left the slow manifold, and the smoothness of f there"},
 	NotFinite:    {"f or its Jacobian is not finite", "check the domain of the right-hand side at this state"},
-	Singular:     {"singular Newton matrix", "check the Jacobian for components of unequal scale or an error"},
+	Singular:     {"singular matrix of the stages", "check the Jacobian for components of unequal scale or an error"},
 }
 
 func (r StopReason) String() string {

@@ -58,6 +58,30 @@ func TestEventsInOneStep(t *testing.T) {
 	}, 1e-4)
 }
 
+// Two events in one step of 0.1 by every method, in order, whichever comes first in
+// the list. The polynomial's error is of order h^p with a coefficient below 1, and
+// the slopes are 0.5 and 0.8.
+func TestTwoEventsInOneStep(t *testing.T) {
+	for f, order := range map[formula]float64{radauThree: 4, radauFive: 6, rodas: 5, dop: 8} {
+		r := f.start(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), FixedStep: 0.1}, 0, []float64{1, 0})
+		list := []Event{
+			{Name: "v falls through −sin 0.57", Value: func(t float64, y []float64) float64 { return y[1] + math.Sin(0.57) }},
+			{Name: "u falls through cos 0.53", Value: func(t float64, y []float64) float64 { return y[0] - math.Cos(0.53) }},
+		}
+		check(t, locate(t, r, 0.95, list), []Occurrence{{Event: 1, T: 0.53}, {Event: 0, T: 0.57}}, 2*math.Pow(0.1, order))
+	}
+}
+
+// An event that comes and goes between two of the places looked at: by time alone,
+// so exact to rounding.
+func TestEventReturnsInOneStep(t *testing.T) {
+	for _, f := range formulas {
+		r := f.start(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), FixedStep: 0.1}, 0, []float64{1, 0})
+		list := []Event{{Value: func(t float64, y []float64) float64 { return (t - 0.03) * (t - 0.08) }}}
+		check(t, locate(t, r, 0.2, list), []Occurrence{{T: 0.03}, {T: 0.08, Rising: true}}, 1e-15)
+	}
+}
+
 // A pair of crossings inside one step, seen at its stages: sin t > 0.9 from 1.12 to
 // 2.02, within the step from 0.7 to 2.7 whose stages 2 to 4 lie at 1.25, 1.87, 2.42.
 func TestEventsDoubleCrossing(t *testing.T) {
@@ -72,18 +96,22 @@ func TestEventsDoubleCrossing(t *testing.T) {
 
 // Times to the accuracy of the run: error of y in tolerances over the slope 1.
 func TestEventTimes(t *testing.T) {
-	const tol = 1e-11
-	r := mustRadau(t, circle{}, Options{RTol: tol, ATol: same(2, tol)}, 0, []float64{1, 0})
-	got := locate(t, r, 20, []Event{{Value: func(t float64, y []float64) float64 { return y[0] }}})
-	var want []Occurrence
-	for k := range 6 {
-		want = append(want, Occurrence{T: (float64(k) + 0.5) * math.Pi, Rising: k%2 == 1})
-	}
-	check(t, got, want, 20*tol)
-	for _, o := range got {
-		if math.Abs(o.Y[0]) > 20*tol {
-			t.Errorf("state at %g: u = %g, want 0", o.T, o.Y[0])
-		}
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			const tol = 1e-11
+			r := f.start(t, circle{}, Options{RTol: tol, ATol: same(2, tol)}, 0, []float64{1, 0})
+			got := locate(t, r, 20, []Event{{Value: func(t float64, y []float64) float64 { return y[0] }}})
+			var want []Occurrence
+			for k := range 6 {
+				want = append(want, Occurrence{T: (float64(k) + 0.5) * math.Pi, Rising: k%2 == 1})
+			}
+			check(t, got, want, 20*tol)
+			for _, o := range got {
+				if math.Abs(o.Y[0]) > 20*tol {
+					t.Errorf("state at %g: u = %g, want 0", o.T, o.Y[0])
+				}
+			}
+		})
 	}
 }
 
@@ -109,9 +137,13 @@ func TestRoot(t *testing.T) {
 // A value that is exactly 0 at the end of a step occurs once, there, when it has
 // changed sign; one that turns back does not occur.
 func TestEventOnStepEnd(t *testing.T) {
-	r := mustRadau(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), FixedStep: 0.5}, 0, []float64{1, 0})
-	check(t, locate(t, r, 2, []Event{
-		{Value: func(t float64, y []float64) float64 { return t - 1 }},
-		{Value: func(t float64, y []float64) float64 { return (t - 1) * (t - 1) }},
-	}), []Occurrence{{T: 1, Rising: true}}, 1e-15)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, circle{}, Options{RTol: 1e-12, ATol: same(2, 1e-12), FixedStep: 0.5}, 0, []float64{1, 0})
+			check(t, locate(t, r, 2, []Event{
+				{Value: func(t float64, y []float64) float64 { return t - 1 }},
+				{Value: func(t float64, y []float64) float64 { return (t - 1) * (t - 1) }},
+			}), []Occurrence{{T: 1, Rising: true}}, 1e-15)
+		})
+	}
 }

@@ -14,8 +14,6 @@ type form struct {
 	total  []float64           // weights of the integrands for the whole step
 }
 
-const maxTerms = 7
-
 func newForm(nd nodes, terms int, weight func(theta float64, w []float64)) *form {
 	f := &form{nodes: nd, terms: terms, weight: weight, total: make([]float64, nd.s)}
 	for j, c := range nd.c[:nd.s] {

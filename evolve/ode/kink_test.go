@@ -48,68 +48,87 @@ func (p switching) Jacobian(t float64, y, dy, j []float64) {
 }
 func (p switching) Kinks() int { return 0 }
 
-// Fixed steps keep order 2s − 1 across a located kink and fall to about 2, the
+// Fixed steps keep their order across a located kink and fall to about 2, the
 // order of a step across a jump of f', without. The kink is met at t = 1 inside a
 // step for every h used.
 func TestOrderAcrossKink(t *testing.T) {
-	worst := func(sys System, stages int, h float64) float64 {
-		r := mustRadau(t, sys, Options{RTol: 1e-13, ATol: same(1, 1e-13), Stages: stages, FixedStep: h}, 0, []float64{0})
+	worst := func(sys System, f formula, h float64) float64 {
+		r := f.start(t, sys, Options{RTol: 1e-13, ATol: same(1, 1e-13), FixedStep: h}, 0, []float64{0})
 		run(t, r, 2.5, nil)
 		return math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1)
 	}
 	for _, c := range []struct {
-		stages int
-		h      float64
-	}{{3, 0.3}, {5, 0.6}} {
-		coarse, fine := worst(&ramp{b: 2}, c.stages, c.h), worst(&ramp{b: 2}, c.stages, c.h/2)
-		if slope, want := math.Log2(coarse/fine), float64(2*c.stages-1); slope < want-0.7 {
-			t.Errorf("%d stages: order %.2f across the kink, want %g (errors %g, %g)", c.stages, slope, want, coarse, fine)
+		formula
+		h     float64
+		order float64
+	}{{radauThree, 0.3, 5}, {radauFive, 0.6, 9}, {rodas, 0.15, 5}, {dop, 0.3, 8}} {
+		coarse, fine := worst(&ramp{b: 2}, c.formula, c.h), worst(&ramp{b: 2}, c.formula, c.h/2)
+		if slope := math.Log2(coarse / fine); slope < c.order-0.7 {
+			t.Errorf("%v: order %.2f across the kink, want %g (errors %g, %g)", c.formula, slope, c.order, coarse, fine)
 		}
-		if without := worst(switching{&ramp{b: 2}}, c.stages, c.h/2); without < 100*fine {
-			t.Errorf("%d stages: error %g without and %g with location: no gain", c.stages, without, fine)
+		if without := worst(switching{&ramp{b: 2}}, c.formula, c.h/2); without < 100*fine {
+			t.Errorf("%v: error %g without and %g with location: no gain", c.formula, without, fine)
 		}
 	}
 }
 
 func TestKinkTimeAndSegment(t *testing.T) {
-	r := mustRadau(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 0, []float64{0})
-	crossed := -1.0
-	run(t, r, 2.5, func(seg *Segment) {
-		if seg.KinkCrossed() == 0 {
-			crossed = seg.T1
-		}
-	})
-	// y = t is integrated exactly and the step landed to 1e-12 of its length.
-	if math.Abs(crossed-1) > 1e-11 {
-		t.Errorf("kink at t = %.15g, want 1", crossed)
-	}
-	if n := r.Stats().KinksCrossed; n != 1 {
-		t.Errorf("%d kinks crossed, want 1", n)
-	}
-	if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
-		t.Errorf("end off by %g", d)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 0, []float64{0})
+			crossed := -1.0
+			run(t, r, 2.5, func(seg *Segment) {
+				if seg.KinkCrossed() == 0 {
+					crossed = seg.T1
+					// Asked after the crossing, the inside is still that of the old branch.
+					var y [1]float64
+					mid := (seg.T0 + seg.T1) / 2
+					if seg.Eval(mid, y[:]); math.Abs(y[0]-mid) > 1e-12 {
+						t.Errorf("y = %g at t = %g, want the same", y[0], mid)
+					}
+				}
+			})
+			// y = t is integrated exactly and the step landed to 1e-12 of its length.
+			if math.Abs(crossed-1) > 1e-11 {
+				t.Errorf("kink at t = %.15g, want 1", crossed)
+			}
+			if n := r.Stats().KinksCrossed; n != 1 {
+				t.Errorf("%d kinks crossed, want 1", n)
+			}
+			if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
+				t.Errorf("end off by %g", d)
+			}
+		})
 	}
 }
 
 // A run that ends where the kink lies goes on past it.
 func TestEndOnKink(t *testing.T) {
-	r := mustRadau(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 0, []float64{0})
-	run(t, r, 1, nil)
-	if r.T() != 1 {
-		t.Errorf("ended at %v, want 1", r.T())
-	}
-	run(t, r, 2.5, nil)
-	if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
-		t.Errorf("end off by %g", d)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 0, []float64{0})
+			run(t, r, 1, nil)
+			if r.T() != 1 {
+				t.Errorf("ended at %v, want 1", r.T())
+			}
+			run(t, r, 2.5, nil)
+			if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
+				t.Errorf("end off by %g", d)
+			}
+		})
 	}
 }
 
 // A start on the kink takes the branch the path enters, whatever was frozen.
 func TestStartOnKink(t *testing.T) {
-	r := mustRadau(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 1, []float64{1})
-	run(t, r, 2.5, nil)
-	if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
-		t.Errorf("end off by %g", d)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, &ramp{b: 2}, Options{RTol: 1e-9, ATol: same(1, 1e-9)}, 1, []float64{1})
+			run(t, r, 2.5, nil)
+			if d := math.Abs(r.State()[0]/(&ramp{b: 2}).exact(2.5) - 1); d > 1e-9 {
+				t.Errorf("end off by %g", d)
+			}
+		})
 	}
 }
 
@@ -146,32 +165,40 @@ func (p *tide) Cross(i int, up bool)                       { p.above[i] = up }
 // times above each level are exact to the landing (1e-12 of a step) and the error
 // of y, over the slope √(1 − level²) of the crossing.
 func TestManyCrossings(t *testing.T) {
-	sys := &tide{levels: []float64{0.5, -0.3, 0.5, 0.9}}
-	r := mustRadau(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10)}, 0, []float64{0, 0})
-	end := 10 * math.Pi
-	run(t, r, end, nil)
-	want := 0.0
-	for _, l := range sys.levels {
-		above := 5 * (math.Pi - 2*math.Asin(l)) // of five periods
-		want += above - (end - above)
-	}
-	if d := math.Abs(r.State()[1] - want); d > 1e-8 {
-		t.Errorf("time above less below off by %g", d)
-	}
-	if n := r.Stats().KinksCrossed; n != 40 {
-		t.Errorf("%d kinks crossed, want 40", n)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			sys := &tide{levels: []float64{0.5, -0.3, 0.5, 0.9}}
+			r := f.start(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10)}, 0, []float64{0, 0})
+			end := 10 * math.Pi
+			run(t, r, end, nil)
+			want := 0.0
+			for _, l := range sys.levels {
+				above := 5 * (math.Pi - 2*math.Asin(l)) // of five periods
+				want += above - (end - above)
+			}
+			if d := math.Abs(r.State()[1] - want); d > 1e-8 {
+				t.Errorf("time above less below off by %g", d)
+			}
+			if n := r.Stats().KinksCrossed; n != 40 {
+				t.Errorf("%d kinks crossed, want 40", n)
+			}
+		})
 	}
 }
 
 // The path touches the level from below: no lasting change of branch, no stall.
 func TestGrazingKink(t *testing.T) {
-	sys := &tide{levels: []float64{1}}
-	r := mustRadau(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10), MaxSteps: 2000}, 0, []float64{0, 0})
-	run(t, r, 20, nil)
-	// An error δ of y spends 2√(2δ) above at each of the three maxima; δ is some
-	// tolerances, 1e-9.
-	if d := math.Abs(r.State()[1] + 20); d > 2*3*2*math.Sqrt(2e-9) {
-		t.Errorf("time above less below off by %g", d)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			sys := &tide{levels: []float64{1}}
+			r := f.start(t, sys, Options{RTol: 1e-10, ATol: same(2, 1e-10), MaxSteps: 2000}, 0, []float64{0, 0})
+			run(t, r, 20, nil)
+			// An error δ of y spends 2√(2δ) above at each of the three maxima; δ is some
+			// tolerances, 1e-9.
+			if d := math.Abs(r.State()[1] + 20); d > 2*3*2*math.Sqrt(2e-9) {
+				t.Errorf("time above less below off by %g", d)
+			}
+		})
 	}
 }
 
@@ -199,25 +226,37 @@ func (p *valve) Cross(i int, up bool)                       { p.above = up }
 // A jump that both sides lead back to has no solution to follow: an error, not an
 // endless chatter.
 func TestSlidingStops(t *testing.T) {
-	r := mustRadau(t, &valve{jump: 1}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
-	var err error
-	for err == nil && r.T() < 5 {
-		_, err = r.Step(5)
-	}
-	if err == nil || !strings.Contains(err.Error(), "kink 0") {
-		t.Fatalf("error is %v, want one that names kink 0", err)
-	}
-	// y + 1 = 1.7 e^{−t} is zero at t = ln 1.7; some tolerances of error, slope 1.
-	if d := math.Abs(r.T() - math.Log(1.7)); d > 1e-7 {
-		t.Errorf("stopped at t = %g, off by %g", r.T(), d)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, &valve{jump: 1}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
+			var err error
+			for err == nil && r.T() < 5 {
+				_, err = r.Step(5)
+			}
+			if err == nil || !strings.Contains(err.Error(), "kink 0") {
+				t.Fatalf("error is %v, want one that names kink 0", err)
+			}
+			// y + 1 = 1.7 e^{−t} is zero at t = ln 1.7; some tolerances of error, slope 1.
+			if d := math.Abs(r.T() - math.Log(1.7)); d > 1e-7 {
+				t.Errorf("stopped at t = %g, off by %g", r.T(), d)
+			}
+		})
 	}
 }
 
 // An equilibrium on a kink is reached in spite of rounding across it.
 func TestSettlingOnKink(t *testing.T) {
-	r := mustRadau(t, &valve{}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
-	run(t, r, 1e6, nil)
-	if y := math.Abs(r.State()[0]); y > 1e-8 {
-		t.Errorf("y = %g, want 0", y)
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, &valve{}, Options{RTol: 1e-8, ATol: same(1, 1e-8), MaxSteps: 1000}, 0, []float64{0.7})
+			end := 1e6
+			if f == dop {
+				end = 1e3 // it cannot take steps longer than the damping time
+			}
+			run(t, r, end, nil)
+			if y := math.Abs(r.State()[0]); y > 1e-8 {
+				t.Errorf("y = %g, want 0", y)
+			}
+		})
 	}
 }

@@ -84,27 +84,53 @@ func TestOrder(t *testing.T) {
 	}
 }
 
+// In the stiff limit k → ∞ the ends of steps are right to h^p/k, p = s for Radau
+// (Hairer & Wanner II, IV.15: stiffly accurate collocation on the problem of
+// Prothero and Robinson) and 3 for Rosenbrock, and the inside, where no formula is
+// stiffly accurate, to h^(s+1) and h⁴ whatever k (both measured here for Rosenbrock,
+// no source).
+func TestStiffOrder(t *testing.T) {
+	sys := kpr{a: -1e6, b: 10, c: 1, d: -1, omega: 5}
+	for _, c := range []struct {
+		formula
+		h           float64
+		ends, dense float64
+	}{{radauThree, 0.05, 3, 4}, {radauFive, 0.1, 5, 6}, {rodas, 0.025, 3, 4}} {
+		coarse, fine := fixedStepErrors(t, c.formula, sys, c.h, 6), fixedStepErrors(t, c.formula, sys, c.h/2, 6)
+		ends, dense := math.Log2(coarse.ends/fine.ends), math.Log2(coarse.dense/fine.dense)
+		t.Logf("%v: order %.2f at ends (error %.1e), %.2f inside (%.1e)", c.formula, ends, fine.ends, dense, fine.dense)
+		if math.Abs(ends-c.ends) > 0.3 || math.Abs(dense-c.dense) > 0.3 {
+			t.Errorf("%v: order %.2f at ends and %.2f inside, want %g and %g", c.formula, ends, dense, c.ends, c.dense)
+		}
+		if fine.ends > 0.01*fine.dense {
+			t.Errorf("%v: ends no better than the inside: %g, %g", c.formula, fine.ends, fine.dense)
+		}
+	}
+}
+
 // A segment ends on the states it joins, to the bit.
 func TestSegmentEnds(t *testing.T) {
-	r := mustRadau(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8)}, 0, []float64{1, 0})
-	old := r.State()[0]
-	run(t, r, 10, func(seg *Segment) {
-		var y, q [2]float64
-		if seg.Eval(seg.T0, y[:]); y[0] != old {
-			t.Errorf("at T0 = %g: %g, state %g", seg.T0, y[0], old)
+	for _, f := range formulas {
+		r := f.start(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8)}, 0, []float64{1, 0})
+		old := r.State()[0]
+		run(t, r, 10, func(seg *Segment) {
+			var y, q [2]float64
+			if seg.Eval(seg.T0, y[:]); y[0] != old {
+				t.Errorf("%v: at T0 = %g: %g, state %g", f, seg.T0, y[0], old)
+			}
+			old = r.State()[0]
+			if seg.Eval(seg.T1, y[:]); y[0] != old {
+				t.Errorf("%v: at T1 = %g: %g, state %g", f, seg.T1, y[0], old)
+			}
+			if seg.QuadraturesTo(seg.T1, q[:]); q[0] != seg.Quadratures()[0] {
+				t.Errorf("%v: quadratures to T1: %g, whole step %g", f, q[0], seg.Quadratures()[0])
+			}
+			if seg.T1 != r.T() {
+				t.Errorf("%v: segment ends at %g, time is %g", f, seg.T1, r.T())
+			}
+		})
+		if r.T() != 10 {
+			t.Errorf("%v: ended at %v, not exactly 10", f, r.T())
 		}
-		old = r.State()[0]
-		if seg.Eval(seg.T1, y[:]); y[0] != old {
-			t.Errorf("at T1 = %g: %g, state %g", seg.T1, y[0], old)
-		}
-		if seg.QuadraturesTo(seg.T1, q[:]); q[0] != seg.Quadratures()[0] {
-			t.Errorf("quadratures to T1: %g, whole step %g", q[0], seg.Quadratures()[0])
-		}
-		if seg.T1 != r.T() {
-			t.Errorf("segment ends at %g, time is %g", seg.T1, r.T())
-		}
-	})
-	if r.T() != 10 {
-		t.Errorf("ended at %v, not exactly 10", r.T())
 	}
 }

@@ -69,32 +69,6 @@ func (p kpr) Integrands(t float64, y, q []float64) {
 }
 func (p kpr) integral(t float64) float64 { return math.Cos(p.omega*t) - 1 }
 
-// vanDerPol is y₁' = y₂, y₂' = ((1 − y₁²) y₂ − y₁)/ε.
-type vanDerPol struct{ eps float64 }
-
-func (vanDerPol) Dim() int { return 2 }
-func (p vanDerPol) Derivs(t float64, y, dy []float64) {
-	dy[0], dy[1] = y[1], ((1-y[0]*y[0])*y[1]-y[0])/p.eps
-}
-func (p vanDerPol) Jacobian(t float64, y, dy, j []float64) {
-	p.Derivs(t, y, dy)
-	j[0], j[1] = 0, 1
-	j[2], j[3] = (-2*y[0]*y[1]-1)/p.eps, (1-y[0]*y[0])/p.eps
-}
-
-// robertson is the autocatalytic reaction of Robertson 1966.
-type robertson struct{}
-
-func (robertson) Dim() int { return 3 }
-func (robertson) Derivs(t float64, y, dy []float64) {
-	a, b, c := 0.04*y[0], 1e4*y[1]*y[2], 3e7*y[1]*y[1]
-	dy[0], dy[1], dy[2] = b-a, a-b-c, c
-}
-func (p robertson) Jacobian(t float64, y, dy, j []float64) {
-	p.Derivs(t, y, dy)
-	copy(j, []float64{-0.04, 1e4 * y[2], 1e4 * y[1], 0.04, -1e4*y[2] - 6e7*y[1], -1e4 * y[1], 0, 6e7 * y[1], 0})
-}
-
 // relax is y' = −k (y − cos t), with y(0) = 1.
 type relax struct{ k float64 }
 
@@ -133,10 +107,18 @@ type formula struct {
 }
 
 func (f formula) String() string {
-	if f.method == MethodRadau {
+	if f.stages != 0 {
 		return fmt.Sprintf("%v, %d stages", f.method, f.stages)
 	}
 	return f.method.String()
+}
+
+// benchmark names it as key and value.
+func (f formula) benchmark() string {
+	if f.stages != 0 {
+		return fmt.Sprintf("method=%v%d", f.method, f.stages)
+	}
+	return "method=" + f.method.String()
 }
 
 var (

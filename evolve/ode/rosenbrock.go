@@ -45,8 +45,9 @@ func (r *Rosenbrock) forget() { r.haveJac, r.jacHere, r.haveDfdt = false, false,
 func (r *Rosenbrock) prepare() error { return r.linearise() }
 
 // differentiate makes ∂f/∂t available. A difference is taken forward, within the
-// step h, from f(t) and two more values, to second order: with δ = ∛ε·h its error
-// and its rounding are both about ε^(2/3) of the step's own change.
+// step h, from f(t) and two more values, to second order: with δ = h ∛ε, and ε the
+// rounding of f or that of t over h, the error and the rounding are both about
+// ε^(2/3) f/h.
 func (r *Rosenbrock) differentiate(h float64) {
 	if r.haveDfdt {
 		return
@@ -56,9 +57,8 @@ func (r *Rosenbrock) differentiate(h float64) {
 		r.byTime.TimeDerivative(r.t, r.y, r.dfdt)
 		return
 	}
-	// δ must be far above the resolution of t, and the points are as t can hold them.
-	delta := max(0x1p-17*h, 0x1p-48*math.Abs(r.t))
-	t1, t2 := r.t+delta, r.t+2*delta
+	delta := h * min(0.5, math.Cbrt(0x1p-52*max(1, math.Abs(r.t)/h)))
+	t1, t2 := r.t+delta, r.t+2*delta // as t can hold them
 	d1, d2 := t1-r.t, t2-r.t
 	r.derivs(t1, r.y, r.stage)
 	r.derivs(t2, r.y, r.point)

@@ -2,6 +2,7 @@ package ode
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"strings"
 	"testing"
@@ -42,116 +43,134 @@ func TestStops(t *testing.T) {
 	for _, c := range []struct {
 		name      string
 		sys       System
+		start     float64 // of y₂
 		opt       Options
 		reason    StopReason
 		component int
 		atLeast   float64 // time reached
 	}{
-		{"budget", vanDerPol{1e-6}, budget, StepBudget, -1, 0},
-		{"minimum step", blowup{}, minStep, StepTooSmall, 1, 0.99},
-		{"domain", wall{}, base, NotFinite, 1, 1 - 1e-12},
-		{"domain, minimum step", wall{}, minStep, NotFinite, 1, 1 - 5e-6},
-		{"domain, fixed step", wall{}, fixed, NotFinite, 1, 0.9 - 1e-15},
-		{"Jacobian", blank{}, base, NotFinite, 1, 0},
+		{"budget", spin{}, 1, budget, StepBudget, -1, 0},
+		{"minimum step", blowup{}, 1, minStep, StepTooSmall, 1, 0.99},
+		{"domain", wall{}, 0, base, NotFinite, 1, 1 - 1e-12},
+		{"domain, minimum step", wall{}, 0, minStep, NotFinite, 1, 1 - 5e-6},
+		{"domain, fixed step", wall{}, 0, fixed, NotFinite, 1, 0.9 - 1e-15},
+		{"Jacobian", blank{}, 0, base, NotFinite, 1, 0},
 	} {
-		r := mustRadau(t, c.sys, c.opt, 0, []float64{2, 0})
-		if _, ok := c.sys.(blowup); ok {
-			r = mustRadau(t, c.sys, c.opt, 0, []float64{0, 1})
-		}
-		var err error
-		for err == nil && r.T() < 5 {
-			_, err = r.Step(5)
-		}
-		var stop *StopError
-		if !errors.As(err, &stop) {
-			t.Errorf("%s: error %v, want a *StopError", c.name, err)
-			continue
-		}
-		if stop.Reason != c.reason || stop.Component != c.component {
-			t.Errorf("%s: %v, component %d; want %v, %d", c.name, stop.Reason, stop.Component, c.reason, c.component)
-		}
-		if stop.T != r.T() || r.T() < c.atLeast || math.IsNaN(r.State()[1]) {
-			t.Errorf("%s: stopped at %g (says %g), want at least %g; state %v", c.name, r.T(), stop.T, c.atLeast, r.State())
-		}
-		if c.reason == StepBudget {
-			st := r.Stats()
-			if n := st.Steps + st.Rejected + st.NewtonFailures; n != c.opt.MaxSteps {
-				t.Errorf("%s: %d attempts, want %d", c.name, n, c.opt.MaxSteps)
+		for _, f := range formulas {
+			if _, ok := c.sys.(blank); ok && f == dop {
+				continue // has no use for a Jacobian
 			}
-		}
-		for _, part := range []string{"t = ", "h = ", "; "} {
-			if !strings.Contains(err.Error(), part) {
-				t.Errorf("%s: message %q lacks %q", c.name, err, part)
+			name := fmt.Sprintf("%s, %v", c.name, f)
+			r := f.start(t, c.sys, c.opt, 0, []float64{0, c.start})
+			var err error
+			for err == nil && r.T() < 5 {
+				_, err = r.Step(5)
+			}
+			var stop *StopError
+			if !errors.As(err, &stop) {
+				t.Errorf("%s: error %v, want a *StopError", name, err)
+				continue
+			}
+			if stop.Reason != c.reason || stop.Component != c.component {
+				t.Errorf("%s: %v, component %d; want %v, %d", name, stop.Reason, stop.Component, c.reason, c.component)
+			}
+			if stop.T != r.T() || r.T() < c.atLeast || math.IsNaN(r.State()[1]) {
+				t.Errorf("%s: stopped at %g (says %g), want at least %g; state %v", name, r.T(), stop.T, c.atLeast, r.State())
+			}
+			if c.reason == StepBudget {
+				st := r.Stats()
+				if n := st.Steps + st.Rejected + st.NewtonFailures; n != c.opt.MaxSteps {
+					t.Errorf("%s: %d attempts, want %d", name, n, c.opt.MaxSteps)
+				}
+			}
+			for _, part := range []string{"t = ", "h = ", "; "} {
+				if !strings.Contains(err.Error(), part) {
+					t.Errorf("%s: message %q lacks %q", name, err, part)
+				}
 			}
 		}
 	}
 }
 
-// y' = −k (y − cos t) with k = −1 makes 1 − hJ and γ/h − J vanish at h = 1 and h = γ.
+// y' = −k (y − cos t) makes the matrices of a step h = 1 vanish: 1 − hJ for k = −1,
+// γ/h − J for k = −γ and 1/(hγ) − J for k = −1/γ.
 func TestSingularMatrices(t *testing.T) {
 	var stop *StopError
-	opt := Options{RTol: 1e-8, ATol: same(1, 1e-8), Fast: []bool{true}, ProjectionStep: 1}
-	r, err := NewRadau(relax{-1}, opt)
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := r.Start(0, []float64{1}); !errors.As(err, &stop) || stop.Reason != Singular {
-		t.Errorf("projection: error %v, want %v", err, Singular)
-	}
-	gamma := radau3().gamma
-	for _, opt := range []Options{{FixedStep: gamma}, {FirstStep: gamma}} {
-		opt.RTol, opt.ATol, opt.Stages = 1e-4, same(1, 1e-4), 3
-		_, err := mustRadau(t, relax{-1}, opt, 0, []float64{1}).Step(100)
-		if opt.FixedStep > 0 && (!errors.As(err, &stop) || stop.Reason != Singular) {
-			t.Errorf("fixed step: error %v, want %v", err, Singular)
+	for f, k := range map[formula]float64{radauThree: -radau3().gamma, rodas: -1 / rodas5P().gamma} {
+		opt := Options{RTol: 1e-4, ATol: same(1, 1e-4)}
+		projected := opt
+		projected.Fast, projected.ProjectionStep = []bool{true}, 1
+		r, err := New(f.method, relax{-1}, projected)
+		if err != nil {
+			t.Fatal(err)
 		}
-		if opt.FixedStep == 0 && err != nil {
-			t.Errorf("a shorter step should do: %v", err)
+		if err := r.Start(0, []float64{1}); !errors.As(err, &stop) || stop.Reason != Singular {
+			t.Errorf("%v, projection: error %v, want %v", f, err, Singular)
+		}
+		fixed, first := opt, opt
+		fixed.FixedStep, first.FirstStep = 1, 1
+		if _, err := f.start(t, relax{k}, fixed, 0, []float64{1}).Step(100); !errors.As(err, &stop) || stop.Reason != Singular {
+			t.Errorf("%v, fixed step: error %v, want %v", f, err, Singular)
+		}
+		if _, err := f.start(t, relax{k}, first, 0, []float64{1}).Step(100); err != nil {
+			t.Errorf("%v: a shorter step should do: %v", f, err)
 		}
 	}
 }
 
 // At t = 1e18 s a step of 0.1 s is none.
 func TestResolutionOfTime(t *testing.T) {
-	for _, opt := range []Options{{FixedStep: 0.1}, {FirstStep: 0.1}, {}} {
-		opt.RTol, opt.ATol = 1e-8, same(2, 1e-8)
-		r := mustRadau(t, spin{}, opt, 1e18, []float64{1, 0})
-		_, err := r.Step(2e18)
-		var stop *StopError
-		if !errors.As(err, &stop) || stop.Reason != StepTooSmall {
-			t.Errorf("%+v: error %v, want %v", opt, err, StepTooSmall)
-		}
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			for _, opt := range []Options{{FixedStep: 0.1}, {FirstStep: 0.1}, {}} {
+				opt.RTol, opt.ATol = 1e-8, same(2, 1e-8)
+				r := f.start(t, spin{}, opt, 1e18, []float64{1, 0})
+				_, err := r.Step(2e18)
+				var stop *StopError
+				if !errors.As(err, &stop) || stop.Reason != StepTooSmall {
+					t.Errorf("%+v: error %v, want %v", opt, err, StepTooSmall)
+				}
+			}
+		})
 	}
 }
 
 // A step to tEnd or onto a kink may be shorter than MinStep.
 func TestMinStepSparesLanding(t *testing.T) {
-	r := mustRadau(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8), MinStep: 0.01}, 0, []float64{1, 0})
-	run(t, r, 1e-4, nil)
-	if r.T() != 1e-4 {
-		t.Errorf("ended at %g", r.T())
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			r := f.start(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8), MinStep: 0.01}, 0, []float64{1, 0})
+			run(t, r, 1e-4, nil)
+			if r.T() != 1e-4 {
+				t.Errorf("ended at %g", r.T())
+			}
+		})
 	}
 }
 
 func TestStepLimits(t *testing.T) {
-	opt := Options{RTol: 1e-8, ATol: same(2, 1e-8), MaxStep: 0.05, FirstStep: 1e-3}
-	r := mustRadau(t, spin{}, opt, 0, []float64{1, 0})
-	first := true
-	run(t, r, 1, func(seg *Segment) {
-		h := seg.T1 - seg.T0
-		if first && math.Abs(h-1e-3) > 1e-15 {
-			t.Errorf("first step %g, want 1e-3", h)
-		}
-		// T1 − T0 carries the rounding of t.
-		if h > 0.05+1e-15 {
-			t.Errorf("step %g exceeds MaxStep", h)
-		}
-		first = false
-	})
-	r = mustRadau(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8), FixedStep: 0.1}, 0, []float64{1, 0})
-	run(t, r, 0.95, nil)
-	if n := r.Stats().Steps; n != 10 || r.T() != 0.95 {
-		t.Errorf("%d fixed steps to %g, want 10 to 0.95", n, r.T())
+	for _, f := range formulas {
+		t.Run(f.String(), func(t *testing.T) {
+			opt := Options{RTol: 1e-8, ATol: same(2, 1e-8), MaxStep: 0.05, FirstStep: 1e-3}
+			r := f.start(t, spin{}, opt, 0, []float64{1, 0})
+			first := true
+			run(t, r, 1, func(seg *Segment) {
+				h := seg.T1 - seg.T0
+				if first && math.Abs(h-1e-3) > 1e-15 {
+					t.Errorf("first step %g, want 1e-3", h)
+				}
+				// T1 − T0 carries the rounding of t.
+				if h > 0.05+1e-15 {
+					t.Errorf("step %g exceeds MaxStep", h)
+				}
+				first = false
+			})
+			r = f.start(t, spin{}, Options{RTol: 1e-8, ATol: same(2, 1e-8), FixedStep: 0.1}, 0, []float64{1, 0})
+			run(t, r, 0.95, nil)
+			if n := r.Stats().Steps; n != 10 || r.T() != 0.95 {
+				t.Errorf("%d fixed steps to %g, want 10 to 0.95", n, r.T())
+			}
+		})
 	}
 }
 
@@ -179,27 +198,53 @@ func TestOptionMistakes(t *testing.T) {
 			t.Errorf("%s: error is %v", want, err)
 		}
 	}
-}
-
-func TestWrongCalls(t *testing.T) {
-	r, err := NewRadau(spin{}, Options{RTol: 1e-6, ATol: same(2, 1e-6)})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if _, err := r.Step(1); err == nil {
-		t.Error("Step before Start passed")
-	}
-	for _, y := range [][]float64{{1}, {1, math.NaN()}} {
-		if err := r.Start(0, y); err == nil {
-			t.Errorf("start from %v passed", y)
+	for want, r := range map[string]func() (Integrator, error){
+		"leave it 0 with Rosenbrock": func() (Integrator, error) {
+			return New(MethodRosenbrock, spin{}, Options{RTol: 1e-6, ATol: same(2, 1e-6), Stages: 3})
+		},
+		"which DOP853 follows": func() (Integrator, error) {
+			return New(MethodDOP853, spin{}, Options{RTol: 1e-6, ATol: same(2, 1e-6), Fast: []bool{true, true}, ProjectionStep: 1})
+		},
+		"Method(3)":       func() (Integrator, error) { return New(3, spin{}, good) },
+		"0 components":    func() (Integrator, error) { return New(MethodDOP853, empty{}, good) },
+		"has 2 values":    func() (Integrator, error) { return New(MethodRosenbrock, relax{}, good) },
+		"RTol is 0, must": func() (Integrator, error) { return New(MethodRadau, spin{}, Options{}) },
+	} {
+		if in, err := r(); err == nil || in != nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %v, error is %v", want, in, err)
 		}
 	}
-	if err := r.Start(0, []float64{1, 0}); err != nil {
-		t.Fatal(err)
-	}
-	for _, end := range []float64{0, -1, math.Inf(1), math.NaN()} {
-		if _, err := r.Step(end); err == nil {
-			t.Errorf("step to %g passed", end)
+}
+
+// empty has no components.
+type empty struct{ spin }
+
+func (empty) Dim() int { return 0 }
+
+func TestWrongCalls(t *testing.T) {
+	for _, f := range formulas {
+		r, err := New(f.method, spin{}, Options{RTol: 1e-6, ATol: same(2, 1e-6)})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if _, err := r.Step(1); err == nil {
+			t.Errorf("%v: Step before Start passed", f)
+		}
+		for _, y := range [][]float64{{1}, {1, math.NaN()}} {
+			if err := r.Start(0, y); err == nil {
+				t.Errorf("%v: start from %v passed", f, y)
+			}
+		}
+		if err := r.Start(math.Inf(1), []float64{1, 0}); err == nil {
+			t.Errorf("%v: start at an infinite time passed", f)
+		}
+		if err := r.Start(0, []float64{1, 0}); err != nil {
+			t.Fatal(err)
+		}
+		for _, end := range []float64{0, -1, math.Inf(1), math.NaN()} {
+			if _, err := r.Step(end); err == nil {
+				t.Errorf("%v: step to %g passed", f, end)
+			}
 		}
 	}
 }
