@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"tidekiln/evolve/ode"
+	"tidekiln/scenarios"
 )
 
 // argument follows the resonance argument ψ_r − ϖ of the strongest member of one
@@ -137,4 +138,42 @@ func librating(list []argument) bool {
 		}
 	}
 	return len(list) > 0
+}
+
+// resonances follows the arguments over a step of the resolved regime, whose end
+// is the time of what they did, and reports whether that ended the step's work: the
+// history is over, or goes on under changed rules.
+func (r *run) resonances(seg *ode.Segment) (done bool, err error) {
+	for i := range r.args {
+		a := &r.args[i]
+		name := a.step(seg, r.integ.State())
+		if name == "" {
+			continue
+		}
+		e := a.passed(r.h.RunID, name, r.t, r.h.Scenario.Run.Stop)
+		r.h.Events = append(r.h.Events, e)
+		w := &watched{Event: ode.Event{Name: name}, body: a.inner, other: a.outer}
+		fired := r.triggered(w)
+		if !e.Ends && fired < 0 {
+			continue
+		}
+		r.add(seg.Quadratures())
+		copy(r.y, r.integ.State())
+		if e.Ends {
+			r.stop(Ended, reasonOf(w))
+			return true, nil
+		}
+		return true, r.change([]int{fired})
+	}
+	return false, nil
+}
+
+// passed turns what an argument did on a step that ended at t into an event,
+// terminal if the scenario stops at it.
+func (a *argument) passed(runID, name string, t float64, stop []scenarios.Trigger) Event {
+	e := Event{runID: runID, Time: t, Name: name, Body: a.inner, Other: a.outer}
+	for _, s := range stop {
+		e.Ends = e.Ends || s.Event == name && matches(s.Body, a.inner) && matches(s.Other, a.outer)
+	}
+	return e
 }
