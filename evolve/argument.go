@@ -139,3 +139,13 @@ func librating(list []argument) bool {
 	}
 	return len(list) > 0
 }
+
+// passed turns what an argument did on a step that ended at t into an event,
+// terminal if the scenario stops at it.
+func (a *argument) passed(runID, name string, t float64, stop []scenarios.Trigger) Event {
+	e := Event{runID: runID, Time: t, Name: name, Body: a.inner, Other: a.outer}
+	for _, s := range stop {
+		e.Ends = e.Ends || s.Event == name && matches(s.Body, a.inner) && matches(s.Other, a.outer)
+	}
+	return e
+}

@@ -106,9 +106,9 @@ const (
 // some 10⁴ additions.
 const rounding = 1e-10
 
-// sampling is the same where tides act as kicks, which sample a libration a few
-// times a turn.
-const sampling = 1e-8
+// sampling is the same where librations are resolved, over spans in which the
+// tides turn over little beside what a libration passes to and fro.
+const sampling = 1e-6
 
 // finish draws the conclusions.
 func (r *run) finish() {
