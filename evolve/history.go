@@ -169,7 +169,7 @@ func (r *run) start() error {
 		r.before = sum(r.before, r.integ.Stats())
 	}
 	var err error
-	if r.integ, err = ode.NewRadau(r.p, r.p.options()); err != nil {
+	if r.integ, err = ode.NewRadau(r.p, r.p.Tolerances()); err != nil {
 		return err
 	}
 	before := append([]float64(nil), r.y...)

@@ -21,9 +21,10 @@ const projectionStep = 1e-4 * Megayear
 // librations: a state off the slow manifold stops with a reason instead.
 const shortestStep = 1e-9 * Megayear
 
-// options gives the integrator its tolerances: relative ones throughout, above
-// the smallest size that matters of each variable.
-func (p *System) options() ode.Options {
+// Tolerances are the integrator's options for the scenario: relative tolerances
+// throughout, above the smallest size that matters of each variable, and which
+// variables of a chain are fast.
+func (p *System) Tolerances() ode.Options {
 	run := p.scenario.Run
 	rtol := run.Tolerance
 	o := ode.Options{

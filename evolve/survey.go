@@ -66,7 +66,7 @@ func Survey(s *scenarios.Scenario, displacement float64) (*Estimates, error) {
 	if err != nil {
 		return nil, err
 	}
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		return nil, err
 	}

@@ -97,7 +97,7 @@ func TestStepsDoNotAllocate(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -187,7 +187,7 @@ func TestAdiabaticStepsDampLibration(t *testing.T) {
 	for k := 0; k < n; k++ {
 		y[n+k] *= 1.05
 	}
-	o := p.options()
+	o := p.Tolerances()
 	o.RTol, o.Stages, o.Fast, o.FirstStep = 1e-3, 3, nil, 0.1*Megayear
 	integ, err := ode.NewRadau(p, o)
 	if err != nil {
@@ -213,7 +213,7 @@ func TestAdiabaticStepsDampLibration(t *testing.T) {
 // projection makes to Re z.
 func librationOf(t *testing.T, p *System, y []float64) float64 {
 	t.Helper()
-	integ, err := ode.NewRadau(p, p.options())
+	integ, err := ode.NewRadau(p, p.Tolerances())
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -233,7 +233,7 @@ func librationOf(t *testing.T, p *System, y []float64) float64 {
 // newton is how far Newton's iteration goes.
 func followFixed(t *testing.T, p *System, y []float64, step, span, newton float64) []float64 {
 	t.Helper()
-	o := p.options()
+	o := p.Tolerances()
 	o.Stages, o.FixedStep, o.Fast, o.MaxSteps, o.MinStep = 5, step, nil, 0, 0
 	o.RTol = newton
 	integ, err := ode.NewRadau(p, o)
