@@ -69,7 +69,7 @@ func (p *port) agree(c *problem) (rhs, jac float64, states int, err error) {
 		}
 		input.WriteByte('\n')
 	}
-	out, err := p.on(c, 0, input.String(), "check")
+	out, err := p.on(c, input.String(), "check")
 	if err != nil {
 		return 0, 0, 0, err
 	}

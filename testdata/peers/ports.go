@@ -3,15 +3,12 @@ package main
 import (
 	"bufio"
 	"bytes"
-	"context"
 	"errors"
 	"fmt"
-	"math"
 	"os"
 	"os/exec"
 	"strconv"
 	"strings"
-	"time"
 )
 
 // port is a peer: another program with the same right-hand side, whose command
@@ -22,27 +19,28 @@ type port struct {
 	file    map[*problem]string // its constants
 }
 
-// ask runs the port and returns what it printed; a non-positive limit is none.
-func (p *port) ask(limit time.Duration, input string, args ...string) (string, error) {
-	ctx := context.Background()
-	if limit > 0 {
-		var cancel context.CancelFunc
-		ctx, cancel = context.WithTimeout(ctx, limit)
-		defer cancel()
-	}
-	all := append(append([]string(nil), p.command[1:]...), args...)
-	cmd := exec.CommandContext(ctx, p.command[0], all...)
+// ask runs the port and returns what it printed.
+func (p *port) ask(input string, args ...string) (string, error) {
+	cmd := exec.Command(p.command[0], append(p.command[1:len(p.command):len(p.command)], args...)...)
 	cmd.Stdin = strings.NewReader(input)
 	var out, complaint bytes.Buffer
 	cmd.Stdout, cmd.Stderr = &out, &complaint
-	err := cmd.Run()
-	if ctx.Err() != nil {
-		return "", context.DeadlineExceeded
-	}
-	if err != nil {
-		return "", fmt.Errorf("%s %s: %w: %s", p.name, strings.Join(args, " "), err, lastLine(complaint.String()))
+	if err := cmd.Run(); err != nil {
+		return "", &portError{p.name, args, err, lastLine(complaint.String())}
 	}
 	return out.String(), nil
+}
+
+// portError is a port that did not exit well.
+type portError struct {
+	port      string
+	args      []string
+	err       error
+	complaint string // the last line it wrote to its standard error
+}
+
+func (e *portError) Error() string {
+	return fmt.Sprintf("%s %s: %v: %s", e.port, strings.Join(e.args, " "), e.err, e.complaint)
 }
 
 func lastLine(s string) string {
@@ -51,21 +49,22 @@ func lastLine(s string) string {
 }
 
 // on is ask with the constants of a case.
-func (p *port) on(c *problem, limit time.Duration, input string, args ...string) (string, error) {
-	return p.ask(limit, input, append([]string{p.file[c]}, args...)...)
+func (p *port) on(c *problem, input string, args ...string) (string, error) {
+	return p.ask(input, append([]string{p.file[c]}, args...)...)
 }
 
 // run makes one integration. A run that does not get to the end is a
 // measurement with an outcome.
-func (p *port) run(c *problem, limit time.Duration, args ...string) (measurement, error) {
-	out, err := p.on(c, limit, "", append([]string{"run"}, args...)...)
-	m := measurement{outcome: "timeout", err: math.Inf(1), cpu: limit.Seconds()}
-	if errors.Is(err, context.DeadlineExceeded) {
+func (p *port) run(c *problem, args ...string) (measurement, error) {
+	out, err := p.on(c, "", append([]string{"run"}, args...)...)
+	var m measurement
+	var failed *portError
+	if errors.As(err, &failed) {
+		m.outcome, m.times = "failed: "+failed.complaint, nil
 		return m, nil
 	}
 	if err != nil {
-		m.outcome = "failed: " + lastLine(err.Error())
-		return m, nil
+		return m, err
 	}
 	lines := bufio.NewScanner(strings.NewReader(out))
 	lines.Scan()
@@ -75,11 +74,9 @@ func (p *port) run(c *problem, limit time.Duration, args ...string) (measurement
 	}
 	m.rejected = newton + errorTests
 	lines.Scan()
-	times, err := floats(lines.Text())
-	if err != nil {
+	if m.times, err = floats(lines.Text()); err != nil {
 		return m, err
 	}
-	m.cpu, m.samples = median(times), len(times)
 	lines.Scan()
 	if m.end, err = floats(lines.Text()); err != nil {
 		return m, err
@@ -102,7 +99,7 @@ func floats(s string) ([]float64, error) {
 // seconds returns the port's own time of a right-hand side and of one with the
 // Jacobian.
 func (p *port) seconds(c *problem) (rhs, jac float64, err error) {
-	out, err := p.on(c, 0, "", "time")
+	out, err := p.on(c, "", "time")
 	if err != nil {
 		return 0, 0, err
 	}

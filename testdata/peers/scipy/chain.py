@@ -169,14 +169,16 @@ class Chain:
         return k, turn / n, by_mu * s["d_mu"] + turn / eta * s["d_eta"]
 
     def tide(self, y, s, derive):
-        """Raise and pump of the synchronous tide, with derivatives to u, g and h."""
+        """Raise and pump of the synchronous tide, with derivatives to u, g and h.
+
+        Beyond the polynomials, where no path of the cases leads, S_j/e^2 stays as
+        it is at their end, so that a method may look there.
+        """
         re, im = y[RE], y[IM]
         g, p = 0.5 * (re * re + im * im), 1 / (1 + y[0])
         ratio = g * p
         e2 = ratio * (2 - ratio)
-        if not e2 <= self.top:
-            raise ArithmeticError(f"e^2 = {e2} is outside the port")
-        n, scale, shape, z = self.motion[0] * p**3, self.scale * p**12, 0.5 * (2 - ratio) * p, e2 / self.top
+        n, scale, shape, z = self.motion[0] * p**3, self.scale * p**12, 0.5 * (2 - ratio) * p, min(e2 / self.top, 1.0)
         total = by_e = by_n = by_h = 0.0
         for j, least, a in self.harmonics:
             if j > 1 and e2 < least:
@@ -221,7 +223,10 @@ class Chain:
         return dy, r, s, kick
 
     def derivs(self, t, y):
-        return numpy.array(self.coupled(y.tolist(), False)[0])
+        try:
+            return numpy.array(self.coupled(y.tolist(), False)[0])
+        except (ArithmeticError, ValueError):
+            return numpy.full(DIM, math.nan)  # outside the domain, as the program says it
 
     def jacobian(self, t, y):
         y = y.tolist()

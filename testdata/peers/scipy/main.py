@@ -1,19 +1,20 @@
 """SciPy on the cases of the program.
 
-    main.py CASE check < STATES        right-hand sides and Jacobians
-    main.py CASE time                  seconds for one of each
-    main.py CASE run RTOL METHOD HELP  one integration
+    main.py CASE check < STATES              right-hand sides and Jacobians
+    main.py CASE time                        seconds for one of each
+    main.py CASE run RTOL METHOD HELP LIMIT  one integration
 
 run prints: outcome, time reached (s), steps, right-hand sides, Jacobians, 0, 0;
 then its CPU seconds; then the state reached. HELP 1 is the analytic Jacobian,
 the projected start and no tolerance on the odd components; 0 the tolerances
-alone. The caller limits the time.
+alone. LIMIT is in CPU seconds.
 """
 
 import os
 
 os.environ["OPENBLAS_NUM_THREADS"] = "1"
 
+import signal
 import sys
 import time
 import warnings
@@ -46,18 +47,41 @@ def timing(case, chain):
     print(*best)
 
 
-def run(case, chain, rtol, method, helped):
+class OutOfTime(Exception):
+    pass
+
+
+def out_of_time(*_):
+    raise OutOfTime
+
+
+def run(case, chain, rtol, method, helped, limit):
     atol = numpy.array(case["atol"]) * rtol / case["rtol"][0]
     options = {}
     if helped:
         atol[numpy.array(case["odd"]) > 0] = 1e10
         options["jac"] = chain.jacobian
     start = case["start" if helped else "given"]
+    calls, reached = 0, 0.0
+
+    def derivs(t, y):
+        nonlocal calls, reached
+        calls, reached = calls + 1, t
+        return chain.derivs(t, y)
+
+    signal.signal(signal.SIGPROF, out_of_time)
+    signal.setitimer(signal.ITIMER_PROF, limit)
     begin = time.process_time()
-    s = solve_ivp(chain.derivs, (0, case["span"][0]), start, method=method, rtol=rtol, atol=atol, **options)
+    try:
+        s = solve_ivp(derivs, (0, case["span"][0]), start, method=method, rtol=rtol, atol=atol, **options)
+    except OutOfTime:
+        print("timeout", f"{reached:.17g}", 0, calls, 0, 0, 0)
+        print(time.process_time() - begin)
+        print(*start)
+        return
     spent = time.process_time() - begin
-    outcome = "done" if s.status == 0 else "failed"
-    print(outcome, f"{s.t[-1]:.17g}", len(s.t) - 1, s.nfev, s.njev, 0, 0)
+    signal.setitimer(signal.ITIMER_PROF, 0)
+    print("done" if s.status == 0 else "failed", f"{s.t[-1]:.17g}", len(s.t) - 1, s.nfev, s.njev, 0, 0)
     print(spent)
     print(*(f"{v:.17g}" for v in s.y[:, -1]))
 
@@ -75,7 +99,7 @@ if __name__ == "__main__":
     elif command == "time":
         timing(case, chain)
     elif command == "run":
-        rtol, method, helped = arguments
-        run(case, chain, float(rtol), method, helped == "1")
+        rtol, method, helped, limit = arguments
+        run(case, chain, float(rtol), method, helped == "1", float(limit))
     else:
         sys.exit(__doc__)
