@@ -21,8 +21,9 @@ const projectionStep = 1e-4 * Megayear
 // librations: a state off the slow manifold stops with a reason instead.
 const shortestStep = 1e-9 * Megayear
 
-// Tolerances gives the integrator its options: relative ones throughout, above
-// the smallest size that matters of each variable.
+// Tolerances are the integrator's options for the scenario: relative tolerances
+// throughout, above the smallest size that matters of each variable, and which
+// variables of a chain are fast.
 func (p *System) Tolerances() ode.Options {
 	run := p.scenario.Run
 	rtol := run.Tolerance
