@@ -70,6 +70,13 @@ func (h *held) K(w float64) float64 {
 	return math.Copysign(c.k, w) + c.dw*(w-at)
 }
 
+// Harmonics writes K at the multiples of n.
+func (h *held) Harmonics(n float64, k []float64) {
+	for j := range k {
+		k[j] = h.K(float64(j+1) * n)
+	}
+}
+
 // Rates writes dx/dt under the tidal heat.
 func (h *held) Rates(_, heat float64, dx []float64) {
 	for i, r := range h.rates {

@@ -58,6 +58,26 @@ func (h *Harmonics) At(x float64) bool { return h.at(x, true) }
 // SynchronousAt fills only what Synchronous needs.
 func (h *Harmonics) SynchronousAt(x float64) bool { return h.at(x, false) }
 
+// synchronousValues is SynchronousAt without the derivatives.
+func (h *Harmonics) synchronousValues(x float64) bool {
+	p := h.panel
+	if p == nil || !(x >= p.low && x < p.high) {
+		return h.at(x, false)
+	}
+	u := 2*(x-p.low)/(p.high-p.low) - 1
+	h.Order = p.orderAt(x)
+	for j := range h.synchronous[:h.Order] {
+		// Clenshaw's recurrence.
+		var b1, b2 float64
+		c := p.synchronous[j]
+		for k := len(c) - 1; k >= 1; k-- {
+			b1, b2 = 2*u*b1-b2+c[k], b1
+		}
+		h.synchronous[j] = u*b1 - b2 + c[0]
+	}
+	return true
+}
+
 func (h *Harmonics) at(x float64, all bool) bool {
 	if !(x >= 0 && x <= MaxEccentricity*MaxEccentricity) {
 		return false

@@ -98,6 +98,11 @@ func TestIoHeatFromAstrometry(t *testing.T) {
 type constantK float64
 
 func (k constantK) K(w float64) float64 { return math.Copysign(float64(k), w) }
+func (k constantK) Harmonics(n float64, out []float64) {
+	for j := range out {
+		out[j] = float64(k)
+	}
+}
 func (k constantK) KDerivs(w float64, dx []float64) (float64, float64) {
 	return k.K(w), 0
 }

@@ -14,7 +14,7 @@ type SynchronousTide struct {
 	m     *member
 	scale float64 // G M² R⁵/(a₀⁶ Λ0), 1/s
 	h     *Harmonics
-	dk    []float64
+	dk, k []float64
 }
 
 // NewSynchronousTide returns the tide in member k of the group, a body of that
@@ -37,7 +37,11 @@ func NewSynchronousTide(g Group, k int, p Primary, radius float64, states int) *
 func (s *SynchronousTide) Kick(l, g float64, r Response, t *Kick, derivs bool) {
 	p := 1 / (1 + l)
 	ratio := g * p
-	if !s.h.SynchronousAt(ratio * (2 - ratio)) {
+	at := s.h.synchronousValues
+	if derivs {
+		at = s.h.SynchronousAt
+	}
+	if !at(ratio * (2 - ratio)) {
 		t.Raise, t.Pump = math.NaN(), math.NaN()
 		return
 	}
@@ -46,10 +50,14 @@ func (s *SynchronousTide) Kick(l, g float64, r Response, t *Kick, derivs bool) {
 	scale := s.scale * p6 * p6
 	shape := 0.5 * (2 - ratio) * p // e²/(2g)
 	if !derivs {
+		for len(s.k) < s.h.Order {
+			s.k = append(s.k, 0)
+		}
+		k := s.k[:s.h.Order]
+		r.Harmonics(n, k)
 		sum := 0.0
-		for j := 1; j <= s.h.Order; j++ {
-			sj, _ := s.h.Synchronous(j)
-			sum += sj * r.K(float64(j)*n)
+		for j, kj := range k {
+			sum += s.h.synchronous[j] * kj
 		}
 		gamma := scale * shape * sum
 		t.Raise, t.Pump = -2*g*gamma, -gamma

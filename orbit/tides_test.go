@@ -14,6 +14,12 @@ type relaxing struct{ x float64 }
 
 func (r relaxing) K(w float64) float64 { k, _ := r.KDerivs(w, make([]float64, 1)); return k }
 
+func (r relaxing) Harmonics(n float64, k []float64) {
+	for j := range k {
+		k[j] = r.K(float64(j+1) * n)
+	}
+}
+
 func (r relaxing) KDerivs(w float64, dx []float64) (k, dw float64) {
 	v := w * r.x
 	d := 1 + v*v

@@ -28,13 +28,37 @@ var andradeLaw = &key.Law{
 type andrade struct {
 	alpha, lnZeta float64
 	phase         complex128 // Γ(1+α) i^{−α}
+	fall          *[sharedHarmonics]float64
 }
+
+// sharedHarmonics is how many harmonics share one power; beyond them each takes
+// its own.
+const sharedHarmonics = 32
 
 func newAndrade(v key.Values) Rheology {
 	alpha := v.Float("alpha")
 	sin, cos := math.Sincos(alpha * math.Pi / 2)
 	g := math.Gamma(1 + alpha)
-	return andrade{alpha, math.Log(v.Float("zeta")), complex(g*cos, -g*sin)}
+	fall := new([sharedHarmonics]float64) // j^{−α}
+	for j := range fall {
+		fall[j] = math.Pow(float64(j+1), -alpha)
+	}
+	return andrade{alpha, math.Log(v.Float("zeta")), complex(g*cos, -g*sin), fall}
+}
+
+// Harmonics implements [harmonicRheology]: (jω)^{−α} = j^{−α} ω^{−α}.
+func (a andrade) Harmonics(w, mu, eta float64, j []complex128) {
+	stiff, flow := 1/mu, 1/(eta*w)
+	creep := stiff * math.Exp(-a.alpha*(math.Log(w*eta*stiff)+a.lnZeta))
+	for i := range j {
+		c := creep
+		if i < sharedHarmonics {
+			c *= a.fall[i]
+		} else {
+			c *= math.Pow(float64(i+1), -a.alpha)
+		}
+		j[i] = complex(stiff+c*real(a.phase), c*imag(a.phase)-flow/float64(i+1))
+	}
 }
 
 // Compliance implements [Rheology].

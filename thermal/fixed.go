@@ -34,6 +34,12 @@ func (f fixed) K(w float64) float64 {
 	return math.Copysign(f.k, w)
 }
 
+func (f fixed) Harmonics(_ float64, k []float64) {
+	for j := range k {
+		k[j] = f.k
+	}
+}
+
 func (f fixed) KDerivs(w float64, _ []float64) (k, dw float64) { return f.K(w), 0 }
 
 // Love knows the imaginary part alone.

@@ -27,6 +27,8 @@ type Interior interface {
 
 	// K returns −Im k₂ at the forcing frequency w, rad/s: odd, K(0) = 0.
 	K(w float64) float64
+	// Harmonics writes K at n, 2n, 3n, … into k, for n > 0.
+	Harmonics(n float64, k []float64)
 	// KDerivs also returns dK/dω, s, and writes the derivatives of K to the
 	// state into dx.
 	KDerivs(w float64, dx []float64) (k, dw float64)

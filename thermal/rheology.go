@@ -12,6 +12,12 @@ type Rheology interface {
 	Compliance(w, mu, eta float64) (j, dw, dmu, deta complex128)
 }
 
+// harmonicRheology is a rheology that gains by computing J* at w, 2w, 3w, … at
+// once, into j.
+type harmonicRheology interface {
+	Harmonics(w, mu, eta float64, j []complex128)
+}
+
 var rheologies = registry[Rheology]{
 	{maxwellLaw, newMaxwell},
 	{andradeLaw, newAndrade},

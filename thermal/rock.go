@@ -84,8 +84,10 @@ type rock struct {
 	layer
 	sphere
 	rheology      Rheology
-	rigidity      float64 // μ₀, Pa
-	rigidityMelt  float64 // b
+	harmonic      harmonicRheology // the same, if it is one
+	compliances   []complex128     // scratch of Harmonics
+	rigidity      float64          // μ₀, Pa
+	rigidityMelt  float64          // b
 	viscosity     viscosity
 	viscosityMelt float64 // B
 	convection    convection
@@ -131,6 +133,7 @@ func newRock(v key.Values) func(Body) (Interior, error) {
 		if r.rheology, err = NewRheology(v.Table("rheology")); err != nil {
 			return nil, err
 		}
+		r.harmonic, _ = r.rheology.(harmonicRheology)
 		if r.viscosity, err = viscosities.build("viscosity law", v.Table("viscosity")); err != nil {
 			return nil, err
 		}

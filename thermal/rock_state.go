@@ -73,6 +73,24 @@ func (r *rock) K(w float64) float64 {
 	return math.Copysign(k, w)
 }
 
+// Harmonics implements [Interior].
+func (r *rock) Harmonics(n float64, k []float64) {
+	if r.harmonic == nil {
+		for j := range k {
+			k[j] = r.K(float64(j+1) * n)
+		}
+		return
+	}
+	for len(r.compliances) < len(k) {
+		r.compliances = append(r.compliances, 0)
+	}
+	c := r.compliances[:len(k)]
+	r.harmonic.Harmonics(n, r.now.mu, r.now.eta, c)
+	for j := range k {
+		k[j], _ = r.response(c[j])
+	}
+}
+
 // frequency returns |ω|, or for ω = 0 one that stands for the limit.
 func (r *rock) frequency(w float64) float64 {
 	if w == 0 {
