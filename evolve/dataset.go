@@ -79,7 +79,10 @@ func (h *History) meta() map[string]string {
 }
 
 // Write writes the history as the dataset w and commits it.
-func (h *History) Write(w *record.Writer) error {
+func (h *History) Write(w *record.Writer) error { return h.write(w, h.meta()) }
+
+// write does, with the footers' pairs.
+func (h *History) write(w *record.Writer, meta map[string]string) error {
 	h.Attempt.runID = h.RunID
 	h.Attempt.Go = runtime.Version()
 	h.Attempt.Host, _ = os.Hostname()
@@ -99,7 +102,6 @@ func (h *History) Write(w *record.Writer) error {
 	runs := record.NewRows(&runsTable.Table)
 	row := h.row()
 	runsTable.add(runs, &row)
-	meta := h.meta()
 	for _, rows := range []*record.Rows{h.rows["bodies"], h.rows["resonances"], h.rows["librations"], h.rows["system"], events, outcomes, attempts, runs} {
 		if err := w.Write(rows, meta); err != nil {
 			return err

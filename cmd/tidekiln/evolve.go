@@ -82,13 +82,22 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 			return err
 		}
 	}
-	if err := os.MkdirAll(filepath.Dir(filepath.Clean(e.out)), 0o777); err != nil {
+	if _, err := evolve.Check(s); err != nil {
+		return request(err)
+	}
+	if err := e.checkPicturePlace(); err != nil {
+		return request(err)
+	}
+	undo, err := makeParents(e.out)
+	if err != nil {
 		return request(fmt.Errorf("%w: choose another --out", err))
 	}
 	w, err := record.Create(e.out, evolve.Tables(), record.CreateOptions{Replace: e.replace})
 	if err != nil {
+		undo()
 		return refused(err)
 	}
+	defer undo()    // no effect on directories that hold something
 	defer w.Abort() // no effect once committed
 	bar := newProgress(os.Stderr, e.quiet)
 	begun := time.Now()
@@ -185,6 +194,9 @@ func (e *evolution) already(runID string) (bool, error) {
 	case stored.Status == evolve.StatusInterrupted:
 		return false, request(fmt.Errorf("%s holds this history up to %.6g Myr, where it was interrupted: go on with --from %s --out NEW, or --replace it", e.out, stored.End/evolve.Megayear, e.out))
 	}
+	if stored.Status == evolve.StatusFailed {
+		return false, &exit{exitStopped, fmt.Errorf("%s holds this history up to %.6g Myr, where it failed: change the scenario, or --replace it", e.out, stored.End/evolve.Megayear)}
+	}
 	if !e.quiet {
 		fmt.Fprintf(e.stdout, "already there: %s, run %s (--replace runs it again)\n", e.out, runID)
 	}
@@ -225,6 +237,47 @@ func checkPicture(path string) error {
 		}
 	}
 	return fmt.Errorf("--figure %s: end the name in %s, or write --figure none", path, strings.Join(figure.Formats(), ", "))
+}
+
+// checkPicturePlace refuses a picture that could not be written, or that would
+// overwrite one that is not known to be this history's.
+func (e *evolution) checkPicturePlace() error {
+	if e.picture == "none" {
+		return nil
+	}
+	if info, err := os.Stat(e.picture); err == nil && (info.IsDir() || !e.replace) {
+		return fmt.Errorf("--figure %s: something is there already: choose another name, --figure none, or --replace it", e.picture)
+	}
+	parent := filepath.Dir(e.picture)
+	if parent == filepath.Dir(filepath.Clean(e.out)) {
+		return nil // made with the dataset's
+	}
+	if info, err := os.Stat(parent); err != nil || !info.IsDir() {
+		return fmt.Errorf("--figure %s: there is no directory %s: create it first", e.picture, parent)
+	}
+	return nil
+}
+
+// makeParents makes the directories a dataset goes into, and returns what
+// removes those it made as long as they are empty.
+func makeParents(path string) (undo func(), err error) {
+	var made []string
+	for dir := filepath.Dir(filepath.Clean(path)); ; dir = filepath.Dir(dir) {
+		if _, err := os.Stat(dir); err == nil || dir == filepath.Dir(dir) {
+			break
+		}
+		made = append(made, dir)
+	}
+	undo = func() {
+		for _, dir := range made {
+			_ = os.Remove(dir) // fails on one that holds something, as it should
+		}
+	}
+	if err := os.MkdirAll(filepath.Dir(filepath.Clean(path)), 0o777); err != nil {
+		undo()
+		return nil, err
+	}
+	return undo, nil
 }
 
 // refused says which kind of failure stands in the way of a dataset.

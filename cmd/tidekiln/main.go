@@ -58,12 +58,12 @@ func run(args []string) int {
 	signal.Notify(signals, os.Interrupt, syscall.SIGTERM, syscall.SIGUSR1, syscall.SIGHUP)
 	defer signal.Stop(signals)
 	go func() {
-		for s := range signals {
-			if s == os.Interrupt {
-				cancel(errCtrlC)
-			} else {
-				cancel(errScheduler)
-			}
+		s := <-signals
+		signal.Stop(signals) // a second one ends the program at once
+		if s == os.Interrupt {
+			cancel(errCtrlC)
+		} else {
+			cancel(errScheduler)
 		}
 	}()
 	root := newRoot()

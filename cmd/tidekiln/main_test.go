@@ -129,6 +129,10 @@ func TestContinueAndShow(t *testing.T) {
 	if got := listing(t, dir); got != "a a-continued a-continued.png" {
 		t.Errorf("left %s", got)
 	}
+	code, out, errs = call(t, dir, "evolve", "--from", "a-continued", "--span", "150 Myr", "--set", "orbiter.Cinder.interior.melt_loss.velocity=2e-8 m/s", "-o", "b", "--figure", "none")
+	if code != 0 || !strings.Contains(out, "100 to 150 Myr") || !strings.Contains(out, `change: orbiter.Cinder.interior.melt_loss.velocity = "2e-8 m/s"`) {
+		t.Errorf("continued twice: exit %d: %s%s", code, out, errs)
+	}
 	code, _, errs = call(t, dir, "evolve", "--from", "a")
 	if code != 2 || !strings.Contains(errs, "--span") {
 		t.Errorf("continuing without a longer span: exit %d, %q", code, errs)
@@ -178,6 +182,8 @@ func TestWrongRequests(t *testing.T) {
 	write("binary.toml", "\x7fELF\x00\x01")
 	write("file", "not a directory")
 	write("huge.toml", strings.Repeat("# a comment that makes the file huge\n", 3<<20))
+	write("taken.png", "somebody's picture")
+	write("late.toml", good+"\n[[observed]]\nbody = \"Cinder\"\ncolumn = \"surface_loss\"\nvalue = 1e14\nerror = 1e13\n")
 	before := listing(t, dir)
 	for _, c := range []struct {
 		args string
@@ -194,6 +200,9 @@ func TestWrongRequests(t *testing.T) {
 		{"evolve volcanic-cycle --out file", []string{"file", "choose another"}},
 		{"evolve volcanic-cycle --out file/below", []string{"file"}},
 		{"evolve volcanic-cycle --out .", []string{"never overwritten", "choose another"}},
+		{"evolve volcanic-cycle --out new/deep/out --figure nowhere/x.png", []string{"nowhere", "create it first"}},
+		{"evolve late.toml --out new/deep/out", []string{"surface_loss", "surface_loss_W"}},
+		{"evolve volcanic-cycle --figure taken.png", []string{"taken.png", "--replace"}},
 		{"evolve volcanic-cycle --figure x.jpg", []string{"x.jpg", ".png"}},
 		{"evolve volcanic-cycle --set run.span=1500", []string{"--set run.span", "unit"}},
 		{"evolve volcanic-cycle --set run.spam=1", []string{"run.spam", "did you mean span?"}},
@@ -296,6 +305,33 @@ func TestKilledAtAnyMoment(t *testing.T) {
 	t.Logf("%d absent, %d whole", absent, there)
 	if absent == 0 {
 		t.Error("no kill came before the end: the test shows nothing")
+	}
+}
+
+// A history that fails says so each time it is asked for, and one that an event
+// ended for good is not continued.
+func TestFailuresAndEnds(t *testing.T) {
+	dir := t.TempDir()
+	for _, want := range []string{"step budget of 50", "where it failed"} {
+		code, _, errs := call(t, dir, "evolve", "volcanic-cycle", "--set", "run.max_steps=50", "-o", "short", "--figure", "none")
+		if code != 1 || !strings.Contains(errs, want) {
+			t.Errorf("exit %d, %q, want %q", code, errs, want)
+		}
+	}
+	args := []string{"evolve", "lone-moon", "--unset", "orbiter.Ember.interior", "--set", "orbiter.Ember.eccentricity=0.6", "--set", "central.tide.k2_over_Q=0.1", "-o", "lost", "--figure", "none"}
+	if code, out, errs := call(t, dir, args...); code != 0 || !strings.Contains(out, "eccentricity-limit") {
+		t.Fatalf("exit %d: %s%s", code, out, errs)
+	}
+	code, _, errs := call(t, dir, "evolve", "--from", "lost", "--span", "5 Gyr")
+	if code != 2 || !strings.Contains(errs, "nothing to continue") {
+		t.Errorf("continuing a lost moon: exit %d, %q", code, errs)
+	}
+	if code, _, errs := call(t, dir, "evolve", "lone-moon", "--set", `run.stop=[{ event = "solidus-crossed" }]`, "-o", "stopped", "--figure", "none"); code != 0 {
+		t.Fatal(errs)
+	}
+	code, out, errs := call(t, dir, "evolve", "--from", "stopped", "--figure", "none")
+	if code != 0 || !strings.Contains(out, "complete") || strings.Contains(out, "solidus") {
+		t.Errorf("continuing from a stop that was asked for: exit %d: %s%s", code, out, errs)
 	}
 }
 

@@ -51,7 +51,7 @@ func newScenariosShow() *cobra.Command {
 		Short: "Print a scenario: a shipped one, a file, or that of a dataset",
 		Long: `Print a shipped scenario or a file as it was written, or, with --resolved, with
 every default filled in. For a dataset, print the resolved scenario that gives
-its rows again.`,
+its rows again; write DATASET/ if a shipped scenario has its name.`,
 		Example: `  tidekiln scenarios show volcanic-cycle > my.toml
   tidekiln scenarios show runs/strong --run 3f2a90c41b7d6e58`,
 		Args:              cobra.ExactArgs(1),
@@ -72,7 +72,11 @@ its rows again.`,
 }
 
 func show(name, run string, resolved bool, e edits) (string, error) {
-	if info, err := os.Stat(name); err == nil && info.IsDir() {
+	isShipped := false
+	for _, s := range scenarios.Shipped() {
+		isShipped = isShipped || s.Name == name
+	}
+	if info, err := os.Stat(name); err == nil && info.IsDir() && !isShipped {
 		about, err := evolve.Describe(name)
 		if err != nil {
 			return "", err
