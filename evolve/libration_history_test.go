@@ -10,6 +10,7 @@ import (
 	"tidekiln/evolve/record"
 	"tidekiln/orbit"
 	"tidekiln/scenarios"
+	"tidekiln/scenarios/key"
 )
 
 // columnOf returns a column of floats of librations for one mode.
@@ -146,7 +147,7 @@ func TestFoldIsTold(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	r.p.bodies[0].primary = orbit.NewPrimaryTide(r.p.groups[0].Group, 0, orbit.CentralTide{K2OverQ: -1e-2})
+	r.p.bodies[0].primary = orbit.NewPrimaryTide(r.p.groups[0].Group, 0, orbit.NewCentralTide(key.Values{Law: "constant-q", Map: map[string]any{"k2_over_Q": -1e-2}}))
 	if err := r.start(nil); err != nil {
 		t.Fatal(err)
 	}

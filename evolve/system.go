@@ -112,7 +112,7 @@ func NewSystem(s *scenarios.Scenario) (*System, []float64, error) {
 	for i, o := range s.Orbiters {
 		b := &p.bodies[i]
 		g := p.groups[b.group].Group
-		if t := orbit.NewPrimaryTide(g, b.member, central); !t.Silent() {
+		if t := orbit.NewPrimaryTide(g, b.member, central); t != nil {
 			b.primary, b.primaryKick = t, orbit.NewKick(0)
 		}
 		if o.Interior.Law == "" {

@@ -6,7 +6,7 @@ import (
 )
 
 // Harmonics are the squared eccentricity functions of the planar quadrupole
-// tide at one eccentricity, as [HarmonicsAt] fills them:
+// tide at one eccentricity, as [Harmonics.At] fills them:
 //
 //	Wave(q)   = G_20q(e)²,  q = −Order…Order   (the m = 2 tide)
 //	Breath(q) = G_21q(e)²,  the same for ±q    (the m = 0 tide)
@@ -48,7 +48,7 @@ func (h *Harmonics) Synchronous(j int) (s, dx float64) {
 	return h.synchronous[j-1], h.dsync[j-1]
 }
 
-// NewHarmonics returns an empty set; HarmonicsAt fills it without allocating
+// NewHarmonics returns an empty set; At fills it without allocating
 // once it has seen the panel of its eccentricity.
 func NewHarmonics() *Harmonics { return &Harmonics{} }
 

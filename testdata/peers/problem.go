@@ -166,7 +166,7 @@ func (p *problem) exportOrbits() error {
 		motion = append(motion, e.KeplerMotion)
 		slope = append(slope, -w.Slope[k])
 		axis = append(axis, e.SemimajorAxis)
-		push = append(push, primary.CircularTorque(tide.K2OverQ, m, e.SemimajorAxis)/l)
+		push = append(push, primary.CircularTorque(tide.Response.K(1), m, e.SemimajorAxis)/l)
 	}
 	p.put("reference_action", ref...)
 	p.put("reference_motion", motion...)
