@@ -3,6 +3,7 @@ package evolve
 import (
 	"context"
 	"math"
+	"slices"
 	"testing"
 
 	"tidekiln/evolve/record"
@@ -56,6 +57,15 @@ func TestMisfit(t *testing.T) {
 	s.Observed = []scenarios.Observed{{Body: "Brine", Column: "surface_loss_W", Value: 1, Error: 1, At: -1}}
 	if h := run1(t, s); !math.IsNaN(h.Misfit) || len(h.Cautions) != 1 {
 		t.Errorf("a column without values: misfit %g, cautions %v", h.Misfit, h.Cautions)
+	}
+	var columns []string
+	for _, c := range bodiesTable.columns {
+		if c.float != nil && c.Name != "time_Myr" {
+			columns = append(columns, c.Name)
+		}
+	}
+	if !slices.Equal(columns, scenarios.ObservedColumns) {
+		t.Errorf("the reader knows the columns %v, the table has %v", scenarios.ObservedColumns, columns)
 	}
 	s.Observed[0].Column = "surface_loss"
 	if _, err := Check(s); err == nil {
