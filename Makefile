@@ -3,7 +3,7 @@
 PREFIX ?= /usr/local
 BIN    := bin/tidekiln
 
-.PHONY: build test check bench pictures install clean
+.PHONY: build test check bench bench-peers pictures install clean
 
 build:            ## the program in bin/
 	CGO_ENABLED=0 go build -trimpath -o $(BIN) ./cmd/tidekiln
@@ -16,6 +16,9 @@ check:            ## all suites, as the gate runs them
 
 bench:            ## benchmarks in Go's own format
 	go test -run '^$$' -bench . -benchmem ./orbit ./thermal ./evolve ./evolve/ode
+
+bench-peers:      ## this program's integrator against CVODE and SciPy; some ten minutes
+	sh testdata/peers/run.sh
 
 pictures: build   ## the README's picture, from a shipped scenario
 	$(BIN) evolve volcanic-cycle --out out/pictures/volcanic-cycle --figure testdata/pictures/volcanic-cycle.png --replace
