@@ -29,11 +29,12 @@ func (p *System) NumQuadratures() int { return perBody*len(p.bodies) + perSystem
 func (p *System) Integrands(t float64, y, q []float64) {
 	p.set(y)
 	p.evaluate(y, p.heatRow, false)
-	p.fluxes(t, q)
+	p.fluxes(t, y, q)
 }
 
-// fluxes writes the same at the state last evaluated.
-func (p *System) fluxes(t float64, q []float64) {
+// fluxes writes the same at the state y last evaluated.
+func (p *System) fluxes(t float64, y, q []float64) {
+	p.centralWork(y)
 	total := q[perBody*len(p.bodies):]
 	clear(total)
 	for i := range p.bodies {
@@ -52,6 +53,21 @@ func (p *System) fluxes(t float64, q []float64) {
 		total[centralTorque] += b.torque
 		total[energyTurnover] += math.Abs(b.heat) + math.Abs(b.work)
 		total[momentumTurnover] += math.Abs(b.torque)
+	}
+}
+
+// centralWork leaves in every body what the central body does to its orbit, at
+// the state y last evaluated. Only the books ask for it.
+func (p *System) centralWork(y []float64) {
+	for i := range p.bodies {
+		b := &p.bodies[i]
+		b.work, b.torque = 0, 0
+		if b.primary != nil {
+			g := &p.groups[b.group]
+			gy := y[g.at : g.at+g.Dim()]
+			b.work = g.Power(b.member, b.primaryKick, gy, g.rates)
+			b.torque = g.Torque(b.member, b.primaryKick, gy)
+		}
 	}
 }
 

@@ -113,7 +113,7 @@ func (s *sampler) take(t float64, y []float64, b books, sums []float64, myr floa
 	p := s.p
 	p.set(y)
 	p.evaluate(y, s.dy, false)
-	p.fluxes(t, s.q)
+	p.fluxes(t, y, s.q)
 	at := func(m *moment) { m.t, m.grid = myr, grid }
 	for i := range p.bodies {
 		body, o := &p.bodies[i], &s.bodies[i]

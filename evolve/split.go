@@ -97,7 +97,7 @@ func (o *split) Drift(y, dy, q []float64) {
 			b.interior.Rates(0, b.heat, dy[b.at:b.at+b.states])
 		}
 	}
-	p.fluxes(0, q)
+	p.fluxes(0, y, q)
 }
 
 // NumQuadratures returns the number of integrands.

@@ -77,7 +77,7 @@ func Survey(s *scenarios.Scenario, displacement float64) (*Estimates, error) {
 	dy, jac := make([]float64, p.dim), make([]float64, p.dim*p.dim)
 	p.Jacobian(0, y, dy, jac)
 	q := make([]float64, p.NumQuadratures())
-	p.fluxes(0, q)
+	p.fluxes(0, y, q)
 	e := &Estimates{}
 	for i := range p.bodies {
 		e.Bodies = append(e.Bodies, p.estimate(i, y, q, displacement))

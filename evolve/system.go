@@ -53,7 +53,7 @@ type body struct {
 	primary       *orbit.PrimaryTide // it raises in the central body; nil if silent
 	primaryKick   *orbit.Kick
 	heat          float64 // tidal heat, W, at the state last evaluated
-	torque, work  float64 // of the central body, N m and W
+	torque, work  float64 // of the central body, N m and W, at the state of the last fluxes
 }
 
 // kink is a place where an interior's right-hand side bends.
@@ -186,7 +186,7 @@ func (p *System) tides(g *group, gy, gdy []float64, derivs bool) {
 	for k, j := range g.body {
 		b := &p.bodies[j]
 		l, gamma := g.Actions(k, gy)
-		b.heat, b.torque, b.work = 0, 0, 0
+		b.heat = 0
 		if b.tide != nil {
 			b.tide.Kick(l, gamma, b.interior, b.tideKick, derivs)
 			g.Push(k, b.tideKick, gy, gdy)
@@ -195,8 +195,6 @@ func (p *System) tides(g *group, gy, gdy []float64, derivs bool) {
 		if b.primary != nil {
 			b.primary.Kick(l, gamma, b.primaryKick)
 			g.Push(k, b.primaryKick, gy, gdy)
-			b.work = g.Power(k, b.primaryKick, gy, g.rates)
-			b.torque = g.Torque(k, b.primaryKick, gy)
 		}
 	}
 }
