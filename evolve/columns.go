@@ -150,6 +150,18 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	text("orbit_outcome", "locked: every chain kept its resonances, or in the resolved regime ends with all of its arguments librating; free: there is no chain, or arguments circulate that never librated; resonance-left; disrupted", "", func(s *runRow) string { return s.OrbitOutcome }),
 	text("regime", "regime of the integration", "", func(s *runRow) string { return s.scenario.Run.Regime }),
 	float("tolerance", "", "relative tolerance of a step", "", func(s *runRow) float64 { return s.scenario.Run.Tolerance }),
+	float("recheck_tolerance", "", "tolerance of the history that rechecks holds this one against", "there was no recheck", func(s *runRow) float64 {
+		if s.recheck == nil {
+			return math.NaN()
+		}
+		return s.recheck.Tolerance
+	}),
+	text("recheck_outcome", "outcome at that tolerance", "there was no recheck, or as for outcome", func(s *runRow) string {
+		if s.recheck == nil {
+			return ""
+		}
+		return s.recheck.Outcome
+	}),
 	float("begin_Myr", "Myr", "time of the first row", "", func(s *runRow) float64 { return s.Begin / Megayear }),
 	float("end_Myr", "Myr", "time of the last row", "", func(s *runRow) float64 { return s.End / Megayear }),
 	float("energy_closure", "", "residual of the energy ledger over the energy turned over", "nothing turned over", func(s *runRow) float64 { return s.Closure.energy }),
@@ -170,6 +182,17 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	list("end_changes", "", "places in the scenario of the changes already made, in their order", "", func(s *runRow) []float64 { return s.endChanges }),
 )
 
+var rechecksTable = newTable("rechecks", "one row a table, subject and column: its greatest difference from the same history at a smaller tolerance; none without a recheck", []string{"run_id", "table_name", "subject", "column_name"},
+	text("run_id", "identity of the history", "", func(s *Difference) string { return s.runID }),
+	text("table_name", "table of the dataset", "", func(s *Difference) string { return s.Table }),
+	text("subject", "the body, the resonance as INNER-OUTER, or the event", "the whole system", func(s *Difference) string { return s.Subject }),
+	text("column_name", "column of that table", "", func(s *Difference) string { return s.Column }),
+	float("difference", "", "greatest difference, relative to the value or to a thousandth of the greatest there is", "", func(s *Difference) float64 { return s.Relative }),
+	rough("time_Myr", "Myr", "where it is", "", func(s *Difference) float64 { return s.Time }),
+	float("recorded", "", "the value there, in the column's unit", "", func(s *Difference) float64 { return s.Value }),
+	float("rechecked", "", "the value at the smaller tolerance, in the column's unit", "", func(s *Difference) float64 { return s.Rechecked }),
+)
+
 var attemptsTable = newTable("attempts", "one row an attempt: what may differ between two runs of the same case", []string{"run_id", "started_at"},
 	text("run_id", "identity of the history", "", func(s *Attempt) string { return s.runID }),
 	text("started_at", "when the attempt began, UTC", "", func(s *Attempt) string { return s.Started }),
@@ -183,6 +206,6 @@ var attemptsTable = newTable("attempts", "one row an attempt: what may differ be
 func Tables() []*record.Table {
 	return []*record.Table{
 		&bodiesTable.Table, &resonancesTable.Table, &librationsTable.Table, &systemTable.Table, &eventsTable.Table,
-		&outcomesTable.Table, &attemptsTable.Table, &runsTable.Table,
+		&outcomesTable.Table, &rechecksTable.Table, &attemptsTable.Table, &runsTable.Table,
 	}
 }

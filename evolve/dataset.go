@@ -24,6 +24,7 @@ type runRow struct {
 	Closure                        closure
 	Suspect                        bool
 	cautions                       []string
+	recheck                        *Recheck
 	Misfit                         float64
 	Stats                          ode.Stats
 	endState, endLedger            []float64
@@ -97,12 +98,18 @@ func (h *History) write(w *record.Writer, meta map[string]string) error {
 	for i := range h.Bodies {
 		outcomesTable.add(outcomes, &h.Bodies[i])
 	}
+	rechecks := record.NewRows(&rechecksTable.Table)
+	if h.Recheck != nil {
+		for i := range h.Recheck.Differences {
+			rechecksTable.add(rechecks, &h.Recheck.Differences[i])
+		}
+	}
 	attempts := record.NewRows(&attemptsTable.Table)
 	attemptsTable.add(attempts, &h.Attempt)
 	runs := record.NewRows(&runsTable.Table)
 	row := h.row()
 	runsTable.add(runs, &row)
-	for _, rows := range []*record.Rows{h.rows["bodies"], h.rows["resonances"], h.rows["librations"], h.rows["system"], events, outcomes, attempts, runs} {
+	for _, rows := range []*record.Rows{h.rows["bodies"], h.rows["resonances"], h.rows["librations"], h.rows["system"], events, outcomes, rechecks, attempts, runs} {
 		if err := w.Write(rows, meta); err != nil {
 			return err
 		}
@@ -114,7 +121,7 @@ func (h *History) row() runRow {
 	row := runRow{
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
-		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, Misfit: h.Misfit,
+		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, recheck: h.Recheck, Misfit: h.Misfit,
 		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {
@@ -129,6 +136,7 @@ type Stored struct {
 	Physics                                      int
 	End                                          float64 // s
 	Scenario                                     string  // TOML, resolved
+	Rechecked                                    bool    // it holds a recheck
 }
 
 // Describe reads what a dataset says of its history.
@@ -157,6 +165,9 @@ func stored(dir string) (*Stored, *record.Frame, error) {
 	s.ScenarioID, errs[2] = first(f.Texts("scenario_id"))
 	s.End, errs[3] = first(f.Floats("end_Myr"))
 	s.End *= Megayear
+	if _, rechecked, err := f.Floats("recheck_tolerance"); err == nil {
+		s.Rechecked = len(rechecked) > 0 && rechecked[0]
+	}
 	if err := errors.Join(errs[:]...); err != nil {
 		return nil, nil, fmt.Errorf("%s is no dataset of one history: %w", dir, err)
 	}

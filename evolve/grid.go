@@ -5,10 +5,12 @@ import (
 	"math/big"
 )
 
-// grid is the cadence of a history: the multiples of an exact number of Myr.
+// grid is the cadence of a history: the multiples of an exact number of Myr, or,
+// to repeat another history's rows, a list of times.
 type grid struct {
-	every *big.Rat // nil: no cadence
-	next  int64    // the multiple that comes next
+	every *big.Rat  // nil: no cadence
+	list  []float64 // Myr, rising; used where every is nil
+	next  int64     // the multiple, or the place in the list, that comes next
 }
 
 // newGrid returns the cadence with the first multiple after begin, Myr.
@@ -25,8 +27,21 @@ func newGrid(every *big.Rat, begin float64) *grid {
 	return g
 }
 
+// more reports whether a time comes next.
+func (g *grid) more() bool { return g.every != nil || g.next < int64(len(g.list)) }
+
+// passed notes that there is a row at t, Myr: a list goes on behind it.
+func (g *grid) passed(t float64) {
+	for g.every == nil && g.more() && g.list[g.next] <= t {
+		g.next++
+	}
+}
+
 // time is the nearest double to the exact multiple that comes next, Myr.
 func (g *grid) time() float64 {
+	if g.every == nil {
+		return g.list[g.next]
+	}
 	t, _ := new(big.Rat).Mul(g.every, new(big.Rat).SetInt64(g.next)).Float64()
 	return t
 }

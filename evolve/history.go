@@ -38,6 +38,7 @@ type History struct {
 	Cautions     []string // what limits the result, and rules that never acted
 	Stats        ode.Stats
 	Attempt      Attempt
+	Recheck      *Recheck // the same history at a smaller tolerance, if it was asked for
 
 	end  end
 	rows map[string]*record.Rows
@@ -69,6 +70,8 @@ type Progress struct {
 type Options struct {
 	From     *Continuation  // state to continue from; nil starts anew
 	Progress func(Progress) // called after every accepted step; may be nil
+
+	times []float64 // Myr, of the rows to write instead of those of the scenario
 }
 
 // Run integrates the history of a scenario. What a scenario alone can get

@@ -79,7 +79,7 @@ func (r *recorder) state(t, myr float64, y, sums []float64, step float64) {
 // quadratures at its beginning. A row exactly at last, the end of the history,
 // is left to state.
 func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
-	if r.change <= 0 && (r.grid.every == nil || r.grid.time()*Megayear > end) {
+	if r.change <= 0 && (!r.grid.more() || r.grid.time()*Megayear > end) {
 		return // no row falls on it
 	}
 	seg.Eval(seg.T1, r.y)
@@ -88,14 +88,16 @@ func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
 	}
 	r.books = books{r.ledger.imposed, r.ledger.closure(r.sampler.p, seg.T1, r.y, r.q), seg.T1 - seg.T0}
 	from := seg.T0
-	for r.grid.every != nil {
+	for r.grid.more() {
 		t := r.grid.time() * Megayear
 		if t > end || t >= last {
 			break
 		}
 		r.between(seg, from, t, sums, false)
 		r.offer(r.at(seg, t, r.grid.time(), sums), true)
-		r.grid.next++
+		if r.grid.every != nil {
+			r.grid.next++
+		}
 		from = t
 	}
 	r.between(seg, from, end, sums, end < last)
@@ -248,6 +250,7 @@ func (r *recorder) straight(a, b, m *candidate, bound float64) bool {
 
 func (r *recorder) write(c *candidate) {
 	r.last = c.t
+	r.grid.passed(c.t)
 	for i := range c.bodies {
 		bodiesTable.add(r.bodies, &c.bodies[i])
 	}

@@ -76,6 +76,9 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 	}
 	r.track = newTracker(r.p)
 	r.rec = newRecorder(r.p, r.carried, r.ledger, newGrid(s.Run.Record.EveryMyr, r.t/Megayear), s.Run.Record.Change, r.h.RunID)
+	if o.times != nil {
+		r.rec.grid, r.rec.change = &grid{list: o.times}, 0
+	}
 	if due := r.due(); len(due) > 0 {
 		if err := r.change(due, nil); err != nil {
 			return nil, err

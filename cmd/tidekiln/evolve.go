@@ -22,7 +22,7 @@ import (
 type evolution struct {
 	edits
 	span, from, out, picture string
-	replace, quiet           bool
+	replace, quiet, recheck  bool
 	stdout                   io.Writer
 }
 
@@ -40,6 +40,7 @@ With --from a stored history goes on from its last state, up to a longer --span.
 Other keys of --set then take effect at that time.`,
 		Example: `  tidekiln evolve volcanic-cycle
   tidekiln evolve my.toml --set central.tide.k2_over_Q=4e-5 --out runs/strong
+  tidekiln evolve volcanic-cycle --recheck --replace
   tidekiln evolve --from volcanic-cycle --span "3 Gyr"`,
 		Args:              cobra.MaximumNArgs(1),
 		ValidArgsFunction: completeScenario,
@@ -55,6 +56,7 @@ Other keys of --set then take effect at that time.`,
 	f.StringVarP(&e.out, "out", "o", "", "`DIRECTORY` for the tables (default: the scenario's name, in this directory)")
 	f.StringVar(&e.picture, "figure", "", "`FILE` for the picture, .png, .svg or .pdf; \"none\" for no picture (default: DIRECTORY.png)")
 	f.BoolVar(&e.replace, "replace", false, "replace a dataset that is already there")
+	f.BoolVar(&e.recheck, "recheck", false, "run again at a hundredth of the tolerance, and store and print the differences")
 	f.BoolVarP(&e.quiet, "quiet", "q", false, "no progress and no summary")
 	return c
 }
@@ -107,6 +109,14 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 		return request(err)
 	}
 	h.Attempt.Wall = time.Since(begun)
+	if e.recheck && h.Status != evolve.StatusInterrupted {
+		again := newProgress(os.Stderr, e.quiet)
+		err := h.Repeat(ctx, evolve.Options{From: from, Progress: again.show})
+		again.done()
+		if err != nil {
+			fmt.Fprintf(os.Stderr, "tidekiln: the history is kept, the recheck is not: %v\n", err)
+		}
+	}
 	if err := h.Write(w); err != nil {
 		return &exit{exitStopped, err}
 	}
@@ -196,6 +206,9 @@ func (e *evolution) already(runID string) (bool, error) {
 	}
 	if stored.Status == evolve.StatusFailed {
 		return false, &exit{exitStopped, fmt.Errorf("%s holds this history up to %.6g Myr, where it failed: change the scenario, or --replace it", e.out, stored.End/evolve.Megayear)}
+	}
+	if e.recheck && !stored.Rechecked {
+		return false, request(fmt.Errorf("%s holds this history without a recheck: --replace runs it again with one", e.out))
 	}
 	if !e.quiet {
 		fmt.Fprintf(e.stdout, "already there: %s, run %s (--replace runs it again)\n", e.out, runID)

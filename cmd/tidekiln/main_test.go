@@ -117,6 +117,28 @@ func TestEvolveLeavesTablesAndPicture(t *testing.T) {
 	}
 }
 
+func TestRecheck(t *testing.T) {
+	dir := t.TempDir()
+	code, out, errs := call(t, dir, "evolve", "lone-moon", "--recheck", "--figure", "none")
+	if code != 0 || errs != "" {
+		t.Fatalf("exit %d, %q", code, errs)
+	}
+	for _, want := range []string{"recheck", "at tolerance 1e-09: the same outcome", "eccentricity", "event times"} {
+		if !strings.Contains(out, want) {
+			t.Errorf("the summary lacks %q:\n%s", want, out)
+		}
+	}
+	if code, out, _ := call(t, dir, "evolve", "lone-moon", "--recheck", "--figure", "none"); code != 0 || !strings.Contains(out, "already there") {
+		t.Errorf("the same again: exit %d, %q", code, out)
+	}
+	if code, _, errs := call(t, dir, "evolve", "quiet-chain", "--figure", "none"); code != 0 {
+		t.Fatal(errs)
+	}
+	if code, _, errs := call(t, dir, "evolve", "quiet-chain", "--recheck", "--figure", "none"); code != 2 || !strings.Contains(errs, "--replace") {
+		t.Errorf("a recheck of what is there: exit %d, %q", code, errs)
+	}
+}
+
 func TestContinueAndShow(t *testing.T) {
 	dir := t.TempDir()
 	if code, _, errs := call(t, dir, "evolve", "volcanic-cycle", "--span", "50 Myr", "-o", "a", "--figure", "none"); code != 0 {

@@ -49,6 +49,9 @@ func summarise(w io.Writer, h *evolve.History, out, picture string) {
 	if !math.IsNaN(h.Misfit) {
 		line("misfit", "%.3g standard errors", h.Misfit)
 	}
+	if h.Recheck != nil {
+		recheckLines(line, h)
+	}
 	line("tables", "%s", out)
 	if picture != "" {
 		line("picture", "%s", picture)
@@ -105,4 +108,24 @@ func ledgerLine(h *evolve.History) string {
 		s += "; SUSPECT: worse than the tolerance explains, try a smaller run.tolerance"
 	}
 	return s
+}
+
+// recheckLines says what a smaller tolerance changes.
+func recheckLines(line func(what, format string, a ...any), h *evolve.History) {
+	same := "the same outcome"
+	switch c := h.Recheck; {
+	case c.Status != h.Status || c.Outcome != h.Outcome:
+		same = fmt.Sprintf("ANOTHER OUTCOME: %s, %s", c.Status, c.Outcome)
+	case c.Events != len(h.Events):
+		same = fmt.Sprintf("the same outcome, but %d events instead of %d", c.Events, len(h.Events))
+	}
+	line("recheck", "at tolerance %.3g: %s; greatest relative differences", h.Recheck.Tolerance, same)
+	for _, q := range []struct{ name, column string }{
+		{"eccentricity", "eccentricity"}, {"semi-major axis", "semimajor_axis_km"}, {"temperature", "temperature_K"},
+		{"tidal heat", "tidal_heat_W"}, {"event times", "time_Myr"},
+	} {
+		if d, ok := h.Recheck.Worst(q.column); ok {
+			line("", "%-16s %.1e  %s at %.6g Myr", q.name, d.Relative, d.Subject, d.Time)
+		}
+	}
 }

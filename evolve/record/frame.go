@@ -9,6 +9,10 @@ type Frame struct {
 	rows *Rows
 }
 
+// Frame gives the rows as a table in memory, without footer pairs. It shares
+// their storage: append no more rows while it is in use.
+func (r *Rows) Frame() *Frame { return &Frame{rows: r} }
+
 // Len is the number of rows.
 func (f *Frame) Len() int { return f.rows.n }
 
