@@ -138,3 +138,25 @@ func TestVolcanicCycle(t *testing.T) {
 	}
 	t.Logf("outcome %s, period %.4g Myr, swing %.4g K, closures %.2g %.2g, %+v", h.Outcome, h.Bodies[0].Period/Megayear, h.Bodies[0].Swing, h.Closure.Energy, h.Closure.Momentum, h.Stats)
 }
+
+// The Rosenbrock method, for loose tolerances: at 1e-5 its histories agree with
+// those of Radau at 1e-8 to a hundred tolerances (it keeps each step to one or two,
+// and nine cycles add them up), on the fronts of a cycle, where a shift in time by
+// that shows tenfold, to a thousand; the books close as well.
+func TestRosenbrock(t *testing.T) {
+	for _, name := range []string{"quiet-chain", "volcanic-cycle", "lone-moon"} {
+		loose := run1(t, shipped(t, name, set("run.method", "rosenbrock"), set("run.tolerance", "1e-5"), set("run.record", "10 Myr")))
+		tight := run1(t, shipped(t, name, set("run.tolerance", "1e-8"), set("run.record", "10 Myr")))
+		a, b := bodiesOf(t, loose), bodiesOf(t, tight)
+		for _, column := range []string{"eccentricity", "temperature_K", "semimajor_axis_km"} {
+			d := greatest(t, a, b, column)
+			t.Logf("%s: %s differs by %.1e", name, column, d)
+			if d > map[bool]float64{true: 1000e-5, false: 100e-5}[name == "volcanic-cycle"] {
+				t.Errorf("%s: %s differs by %.1e", name, column, d)
+			}
+		}
+		if loose.Outcome != tight.Outcome || loose.Suspect || loose.Closure.Energy > 1e-4 {
+			t.Errorf("%s: %s, closure %g; by Radau %s", name, loose.Outcome, loose.Closure.Energy, tight.Outcome)
+		}
+	}
+}

@@ -131,7 +131,7 @@ func (r *run) start(passed []ode.Occurrence) error {
 	} else {
 		o := r.p.Tolerances()
 		o.MaxSteps = left
-		next, err = ode.NewRadau(r.p, o)
+		next, err = ode.New(r.p.adiabaticMethod(), r.p, o)
 	}
 	if err != nil {
 		return err

@@ -5,6 +5,7 @@ import (
 
 	"tidekiln/evolve/ode"
 	"tidekiln/orbit"
+	"tidekiln/scenarios"
 )
 
 // oddTime is the step beyond which the odd components of a chain, Im z and the
@@ -60,6 +61,17 @@ func (p *System) Tolerances() ode.Options {
 	}
 	return o
 }
+
+// adiabaticMethod is the integrator of the adiabatic regime.
+func (p *System) adiabaticMethod() ode.Method {
+	if p.scenario.Run.Method == scenarios.Rosenbrock {
+		return ode.MethodRosenbrock
+	}
+	return ode.MethodRadau
+}
+
+// TimeDerivative writes ∂f/∂t: no law depends on time by itself.
+func (p *System) TimeDerivative(_ float64, _, dfdt []float64) { clear(dfdt) }
 
 // component names a state variable.
 func (p *System) component(i int) string {

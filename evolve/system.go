@@ -63,6 +63,8 @@ var (
 	_ ode.System      = (*System)(nil)
 	_ ode.Quadratures = (*System)(nil)
 	_ ode.Piecewise   = (*System)(nil)
+
+	_ ode.TimeDerivative = (*System)(nil)
 )
 
 // NewSystem builds the equations of a scenario and their start state: chains

@@ -126,8 +126,8 @@ var problemCases = []struct{ name, old, new, want string }{
   hint: write regime = "adiabatic" or regime = "resolved"`},
 	{"unknown regime", `span = "100 Myr"`, "span = \"100 Myr\"\nregime = \"fast\"", `base.toml:4: run.regime: "fast" is not one of its choices
   hint: choose one of adiabatic, resolved`},
-	{"method without resolving", `span = "100 Myr"`, "span = \"100 Myr\"\nmethod = \"dop853\"", `base.toml:4: run.method: is the integrator of the resolved regime, and the regime is adiabatic
-  hint: remove it, or write regime = "resolved"`},
+	{"method without resolving", `span = "100 Myr"`, "span = \"100 Myr\"\nmethod = \"dop853\"", `base.toml:4: run.method: "dop853" is no integrator of the adiabatic regime
+  hint: remove it, or write radau or rosenbrock`},
 	{"tolerance", `span = "100 Myr"`, "span = \"100 Myr\"\ntolerance = 0.1", `base.toml:4: run.tolerance: 0.1 is out of range
   hint: it must be at least 1e-12 and at most 0.001`},
 	{"steps", `span = "100 Myr"`, "span = \"100 Myr\"\nmax_steps = 1.5", `base.toml:4: run.max_steps: 1.5 is not a whole number

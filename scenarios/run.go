@@ -17,8 +17,8 @@ var runKeys = []key.Key{
 		Meaning: "age of the system when the history begins, for laws that depend on it; none of this version does"},
 	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic", "resolved"}, Default: "adiabatic", Fixed: true,
 		Meaning: "how librations are treated: adiabatic steps over them, for gigayears; resolved follows each at some ten steps a year, for 1e4 to 1e8 years"},
-	{Name: "method", Kind: key.Choice, Choices: []string{"splitting", "dop853"}, Optional: true, Fixed: true,
-		Meaning: "integrator of the resolved regime: splitting, the exact linear flow about the libration centre and small remainders, for chains that stay locked; dop853, for everything; without it splitting where every chain starts locked, dop853 elsewhere"},
+	{Name: "method", Kind: key.Choice, Choices: []string{"radau", "rosenbrock", "splitting", "dop853"}, Optional: true, Fixed: true,
+		Meaning: "integrator. Adiabatic: radau, the default, at any tolerance; rosenbrock, cheaper at 1e-3 and for many runs of moderate accuracy. Resolved: splitting, the exact linear flow about the libration centre and small remainders, the default where every chain starts locked; dop853, for everything, the default elsewhere"},
 	{Name: "tolerance", Kind: key.Number, Default: 1e-7, Range: key.Between(1e-12, 1e-3), Fixed: true,
 		Meaning: "relative error allowed in a step"},
 	{Name: "record", Kind: key.Special, Optional: true, Fixed: true,
@@ -39,10 +39,12 @@ const (
 	Resolved  = "resolved"
 )
 
-// Methods of the resolved regime.
+// Methods of the adiabatic and of the resolved regime.
 const (
-	Splitting = "splitting"
-	DOP853    = "dop853"
+	Radau      = "radau"
+	Rosenbrock = "rosenbrock"
+	Splitting  = "splitting"
+	DOP853     = "dop853"
 )
 
 // laterRegimes are refused as unavailable, not as unknown.
@@ -76,8 +78,10 @@ func (r *reader) run(n *node, top *scope) Run {
 			run.MaxSteps = 1e9
 		}
 	}
-	if run.Method, _ = v.Map["method"].(string); run.Method != "" && run.Regime == Adiabatic {
-		r.report(at.with("method"), "is the integrator of the resolved regime, and the regime is adiabatic", `remove it, or write regime = "resolved"`)
+	run.Method, _ = v.Map["method"].(string)
+	if stepsOver := run.Method == Radau || run.Method == Rosenbrock; run.Method != "" && stepsOver != (run.Regime == Adiabatic) {
+		other := map[bool]string{true: "splitting or dop853", false: "radau or rosenbrock"}[stepsOver]
+		r.report(at.with("method"), quote(run.Method)+" is no integrator of the "+run.Regime+" regime", "remove it, or write "+other)
 	}
 	if record, ok := v.Map["record"].(*node); ok {
 		run.Record = r.record(record, at.with("record"), run.Span)
