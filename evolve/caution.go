@@ -38,7 +38,7 @@ func Check(s *scenarios.Scenario) (cautions []string, err error) {
 			cautions = append(cautions, fmt.Sprintf("%s has a density of %.3g kg/m3: see its mass and radius", b.name, density))
 		}
 	}
-	watch := p.watchlist(nil)
+	watch := p.watchlist(nil, s.Run.Regime == scenarios.Resolved)
 	for i, c := range s.Changes {
 		switch {
 		case c.When == nil && c.At >= s.Run.Span:

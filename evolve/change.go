@@ -2,7 +2,6 @@ package evolve
 
 import (
 	"fmt"
-	"math"
 	"strings"
 
 	"tidekiln/evolve/ode"
@@ -56,10 +55,7 @@ func (r *run) triggered(e *Event) int {
 // is set; what that does to its energy is booked as imposed. There is a row just
 // before and one just after. Passed are the events that have just occurred.
 func (r *run) change(which []int, passed []ode.Occurrence) error {
-	myr := r.rec.grid.myr(r.t)
-	if r.t > r.h.Begin && myr != r.rec.last {
-		r.rec.state(r.t, myr, r.y, r.ledger.sums, r.step)
-	}
+	r.rowBefore()
 	for _, i := range which {
 		set := r.h.Scenario.Changes[i].Set
 		var words []string
@@ -79,9 +75,7 @@ func (r *run) change(which []int, passed []ode.Occurrence) error {
 	}
 	r.carried.restart(r.p, r.t, r.y)
 	r.rec.follow(r.p, r.carried, r.h.RunID)
-	if r.t > r.h.Begin {
-		r.rec.state(r.t, math.Nextafter(myr, math.Inf(1)), r.y, r.ledger.sums, r.step)
-	}
+	r.rowAfter()
 	return nil
 }
 

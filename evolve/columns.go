@@ -114,7 +114,7 @@ var eventsTable = newTable("events", "one row an event", []string{"run_id", "tim
 	text("other_body", "the second orbiter", "it concerns one orbiter or none", func(s *Event) string { return s.Other }),
 	text("direction", "rising or falling through the limit", "the event has no direction", func(s *Event) string { return s.Direction }),
 	truth("ends_history", "the history ends here", func(s *Event) bool { return s.Ends }),
-	text("detail", "the rule that changed, or the value at the limit", "there is nothing to add", func(s *Event) string { return s.Detail }),
+	text("detail", "the rule that changed, the value at the limit, or the regime from here on and why", "there is nothing to add", func(s *Event) string { return s.Detail }),
 )
 
 var outcomesTable = newTable("outcomes", "one row a history and body: what became of it", []string{"run_id", "body"},
@@ -149,6 +149,7 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	text("outcome", outcomeMeaning, "no body has a thermal state and none was lost", func(s *runRow) string { return s.Outcome }),
 	text("orbit_outcome", "locked: every chain kept its resonances, or in the resolved regime ends with all of its arguments librating; free: there is no chain, or arguments circulate that never librated; resonance-left; disrupted", "", func(s *runRow) string { return s.OrbitOutcome }),
 	text("regime", "regime of the integration", "", func(s *runRow) string { return s.scenario.Run.Regime }),
+	text("end_regime", "the one of adiabatic and resolved that holds at the end", "", func(s *runRow) string { return s.endRegime }),
 	float("tolerance", "", "relative tolerance of a step", "", func(s *runRow) float64 { return s.scenario.Run.Tolerance }),
 	float("recheck_tolerance", "", "tolerance of the history that rechecks holds this one against", "there was no recheck", func(s *runRow) float64 {
 		if s.recheck == nil {

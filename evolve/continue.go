@@ -36,7 +36,7 @@ func Load(dir string) (*Continuation, error) {
 	c := &Continuation{RunID: s.RunID, Scenario: s.Scenario, Time: s.End}
 	var books, changes []float64
 	errs := make([]error, 8)
-	c.regime, errs[0] = first(f.Texts("regime"))
+	c.regime, errs[0] = first(f.Texts("end_regime"))
 	c.state, errs[1] = first(f.Lists("end_state"))
 	c.librations, errs[2] = first(f.Lists("end_librations"))
 	c.observed, errs[3] = first(f.Lists("end_observed"))
@@ -121,8 +121,10 @@ func (r *run) resume(c *Continuation) error {
 func (r *run) resumeLibrations(c *Continuation) error {
 	before := c.regime == scenarios.Resolved
 	switch {
+	case before && r.auto():
+		return r.resumeFollowing(c.librations)
 	case before && !r.resolved:
-		return errors.New("the dataset holds a history of the resolved regime, whose librations the adiabatic one would lose: continue it with run.regime = \"resolved\"")
+		return errors.New("the dataset holds a history of the resolved regime, whose librations the adiabatic one would lose: continue it with run.regime = \"resolved\" or \"auto\"")
 	case before:
 		r.carried = noCarrier(r.p)
 		return nil
@@ -131,20 +133,46 @@ func (r *run) resumeLibrations(c *Continuation) error {
 	if r.carried, err = newCarrier(r.p, r.t, r.y, c.librations); err != nil {
 		return err
 	}
-	if r.resolved {
+	if r.auto() {
+		r.startWide = r.carried.tooWide()
+	}
+	if r.resolved || r.startWide != "" {
 		o0, i0, l0 := r.p.stores(r.t, r.y)
-		r.carried.displace(r.y, r.h.Scenario.Run.Seed)
+		if r.auto() {
+			r.follows(r.y)
+		} else {
+			r.carried.displace(r.y, r.h.Scenario.Run.Seed)
+			r.carried = noCarrier(r.p)
+		}
 		o1, i1, l1 := r.p.stores(r.t, r.y)
 		r.ledger.impose(o1-o0+i1-i0, l1-l0)
-		r.carried = noCarrier(r.p)
 	}
+	return nil
+}
+
+// resumeFollowing goes on following librations in an auto history; of those
+// stored, if any, the carrier put aside keeps where the fold is judged from.
+func (r *run) resumeFollowing(stored []float64) error {
+	if len(stored) == 0 {
+		stored = nil
+	}
+	still := append([]float64(nil), r.y...)
+	r.p.principal(still)
+	if err := r.p.still(r.t, still); err != nil {
+		return fmt.Errorf("the dataset ends far from any lock: %w; continue it with run.regime = %q", err, scenarios.Resolved)
+	}
+	l, err := newCarrier(r.p, r.t, still, stored)
+	if err != nil {
+		return err
+	}
+	r.gauge, r.carried, r.resolved = newGauge(l, r.t), noCarrier(r.p), true
 	return nil
 }
 
 // passedBefore keeps the events at the end of the continued history from
 // occurring again, and refuses to go on beyond one that ended it for good.
 func (r *run) passedBefore(c *Continuation) error {
-	final := r.p.watchlist(nil)
+	final := r.p.watchlist(nil, r.resolved && !r.auto())
 	var passed []ode.Occurrence
 	for _, e := range c.passed {
 		for i := range final {
@@ -160,6 +188,6 @@ func (r *run) passedBefore(c *Continuation) error {
 			}
 		}
 	}
-	r.events.Reset(r.t, r.y, passed...)
+	r.events.Reset(r.t, r.y, passed...) // what ends no history comes first in either regime
 	return nil
 }

@@ -30,11 +30,13 @@ type runRow struct {
 	endState, endLedger            []float64
 	endLibrations, endObserved     []float64
 	endChanges                     []float64
+	endRegime                      string
 }
 
 // end is what a continued history takes up.
 type end struct {
 	state      []float64
+	regime     string // Adiabatic or Resolved
 	ledger     *ledger
 	librations []float64
 	observed   []float64
@@ -122,7 +124,7 @@ func (h *History) row() runRow {
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
 		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, recheck: h.Recheck, Misfit: h.Misfit,
-		Stats: h.Stats, endState: h.end.state, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
+		Stats: h.Stats, endState: h.end.state, endRegime: h.end.regime, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {
 		row.endChanges = append(row.endChanges, float64(i))

@@ -79,7 +79,7 @@ func TestLimits(t *testing.T) {
 	find := func(name, body string, beyond []float64) {
 		t.Helper()
 		found := 0
-		for _, w := range p.watchlist(nil) {
+		for _, w := range p.watchlist(nil, false) {
 			if w.Name != name || w.body != body || !w.ends {
 				continue
 			}
@@ -105,7 +105,7 @@ func TestLimits(t *testing.T) {
 	find(scenarios.EventOrbitsCross, "Cinder", moved(0, 0.27))
 	find(scenarios.EventResonanceLeft, "Brine", moved(9, -1.6))
 	find(scenarios.EventResonanceLeft, "Cairn", moved(5, -y[5]))
-	if lax := p.watchlist([]scenarios.Trigger{{Event: "solidus-crossed", Body: "Cinder"}}); !lax[0].ends {
+	if lax := p.watchlist([]scenarios.Trigger{{Event: "solidus-crossed", Body: "Cinder"}}, false); !lax[0].ends {
 		t.Error("a stop that was asked for does not end the history")
 	}
 }

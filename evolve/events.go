@@ -27,7 +27,7 @@ type Event struct {
 }
 
 // watched is an event the integrator looks for, or, without a Value, one of the
-// librations, which come last.
+// librations or a change of regime, which come last.
 type watched struct {
 	ode.Event
 	body, other string
@@ -39,9 +39,9 @@ type watched struct {
 // are tabulated to a little beyond it.
 const nearlyParabolic = 0.94
 
-// watchlist returns every event of a system. Stop triggers make theirs
-// terminal.
-func (p *System) watchlist(stop []scenarios.Trigger) []watched {
+// watchlist returns every event of a system in a regime. Stop triggers make
+// theirs terminal.
+func (p *System) watchlist(stop []scenarios.Trigger, resolved bool) []watched {
 	var list []watched
 	for i := range p.bodies {
 		b := &p.bodies[i]
@@ -74,13 +74,16 @@ func (p *System) watchlist(stop []scenarios.Trigger) []watched {
 				}}})
 		}
 	}
-	if p.scenario.Run.Regime == scenarios.Adiabatic {
+	if !resolved {
 		for i := range p.groups {
 			list = append(list, p.groups[i].leaving(p)...)
 		}
 	}
 	for i := range p.groups {
 		list = append(list, p.groups[i].librating()...)
+	}
+	if p.scenario.Run.Regime == scenarios.Auto {
+		list = append(list, watched{Event: ode.Event{Name: scenarios.EventRegimeChanged}})
 	}
 	for i := range list {
 		for _, s := range stop {

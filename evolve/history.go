@@ -124,11 +124,11 @@ func (r *run) finish() {
 	c := r.ledger.closure(r.p, r.t, r.y, r.ledger.sums)
 	h.Closure.Energy, h.Closure.Momentum = c.energy, c.momentum
 	bound := math.Max(closureFactor*h.Scenario.Run.Tolerance, rounding)
-	if r.resolved {
+	if r.resolved || r.gauge != nil {
 		bound = math.Max(resolvedClosureFactor*h.Scenario.Run.Tolerance, sampling)
 	}
 	h.Suspect = c.energy > bound || c.momentum > bound
-	h.end = end{state: r.y, ledger: r.ledger, changes: r.made, librations: r.carried.pack(r.t), observed: r.met()}
+	h.end = end{state: r.y, ledger: r.ledger, changes: r.made, regime: r.carried.regime(), librations: r.packLibrations(), observed: r.met()}
 	r.conclude()
 	h.Cautions = r.cautions()
 	h.rows["bodies"], h.rows["resonances"], h.rows["system"] = r.rec.bodies, r.rec.resonances, r.rec.system

@@ -26,6 +26,7 @@ import (
 type carrier struct {
 	p          *System
 	chains     []libration
+	followed   bool // librations are in the state; there are no chains here
 	y, dy, jac []float64
 }
 
@@ -247,7 +248,7 @@ func (l *carrier) restart(p *System, t float64, y []float64) {
 }
 
 // noCarrier carries nothing: librations are followed.
-func noCarrier(p *System) *carrier { return &carrier{p: p} }
+func noCarrier(p *System) *carrier { return &carrier{p: p, followed: true} }
 
 // displace gives the librations carried to a state on the slow manifold, for
 // them to be followed from there: δy = Re Σ √I v e^{iθ}, phases θ from the seed.

@@ -94,9 +94,10 @@ func (l *carrier) occurred(t1 float64) []news {
 // argument followed.
 type occurrence struct {
 	ode.Occurrence
-	news    *news // of the librations
-	passage bool  // of an argument
-	told    Event // by that
+	news    *news  // of the librations
+	wide    string // why they are to be followed, without an event of its own
+	passage bool   // of an argument
+	told    Event  // by that
 }
 
 // occurred carries the librations over an accepted step and returns all that
@@ -108,16 +109,23 @@ func (r *run) occurred(seg *ode.Segment) []occurrence {
 		list = append(list, occurrence{Occurrence: o})
 	}
 	for _, n := range r.carried.occurred(seg.T1) {
+		if r.auto() && librationEvents[n.event] == scenarios.EventCentreUnstable {
+			n.t = r.carried.chains[n.chain].end().t // up to which it is known
+		}
 		// Those of the first chain are the first without a value.
 		at := slices.IndexFunc(r.watch, func(w watched) bool { return w.Value == nil })
 		y := make([]float64, r.p.dim)
 		seg.Eval(n.t, y)
 		list = append(list, occurrence{Occurrence: ode.Occurrence{Event: at + n.chain*len(librationEvents) + n.event, T: n.t, Y: y}, news: &n})
 	}
+	if r.auto() {
+		list = append(list, r.widened(seg)...)
+	}
 	for i := range r.args {
 		a := &r.args[i]
 		if name := a.step(seg, r.integ.State()); name != "" {
 			list = append(list, occurrence{Occurrence: ode.Occurrence{T: seg.T1}, passage: true, told: a.passed(r.h.RunID, name, seg.T1, r.h.Scenario.Run.Stop)})
+			r.lostResonance(&list[len(list)-1].told)
 		}
 	}
 	slices.SortStableFunc(list, func(a, b occurrence) int { return cmp.Compare(a.T, b.T) })

@@ -26,12 +26,14 @@ type run struct {
 	rec       *recorder
 	track     *tracker
 	carried   *carrier
-	pending   []int // changes not made yet, by their place in the scenario
+	gauge     *gauge // of librations that an auto history follows, or has followed
+	pending   []int  // changes not made yet, by their place in the scenario
 	made      []int
 	seen      []observation
 	t         float64
 	step      float64
 	y         []float64
+	startWide string // why an auto history starts resolved
 }
 
 func begin(s *scenarios.Scenario, o Options) (*run, error) {
@@ -87,6 +89,9 @@ func begin(s *scenarios.Scenario, o Options) (*run, error) {
 	r.rec.state(r.t, r.rec.grid.myr(r.t), r.y, r.ledger.sums, math.NaN())
 	r.point(r.t, r.y, r.ledger.sums)
 	r.observe(r.t)
+	if r.startWide != "" {
+		r.h.Events = append(r.h.Events, r.toldRegime(scenarios.Resolved, r.startWide))
+	}
 	return r, nil
 }
 
@@ -101,7 +106,12 @@ func (r *run) settle() error {
 	if r.carried, err = newCarrier(r.p, 0, still, nil); err != nil {
 		return err
 	}
-	if r.resolved {
+	if r.auto() {
+		if r.startWide = r.carried.tooWide(); r.startWide != "" {
+			r.follows(still)
+			copy(r.y, still)
+		}
+	} else if r.resolved {
 		r.carried.displace(still, r.h.Scenario.Run.Seed)
 		r.carried = noCarrier(r.p)
 		copy(r.y, still)
@@ -147,7 +157,7 @@ func (r *run) start(passed []ode.Occurrence) error {
 	copy(r.y, next.State())
 	o1, i1, l1 := r.p.stores(r.t, r.y)
 	r.ledger.impose(o1-o0+i1-i0, l1-l0)
-	r.watch = r.p.watchlist(r.h.Scenario.Run.Stop)
+	r.watch = r.p.watchlist(r.h.Scenario.Run.Stop, r.resolved)
 	var list []ode.Event
 	for i := range r.watch {
 		if r.watch[i].Value != nil {
@@ -167,6 +177,7 @@ type ending struct {
 	at     float64
 	y      []float64 // nil for the end of the step
 	ends   bool      // the history
+	wide   string    // why an auto history goes on resolved; "" if it does not
 	fired  []int     // changes that were waited for
 	passed []ode.Occurrence
 }
@@ -180,7 +191,9 @@ func (r *run) advance() {
 	}
 	e := r.happened(seg)
 	r.step = seg.T1 - seg.T0
-	r.follow(seg, e.at)
+	if e.at > seg.T0 {
+		r.follow(seg, e.at)
+	}
 	r.t = e.at
 	if e.y == nil {
 		r.add(seg.Quadratures())
@@ -206,7 +219,11 @@ func (r *run) advance() {
 			return
 		}
 	}
-	if r.t >= r.h.Scenario.Run.Span {
+	if err := r.changeRegime(e.wide); err != nil {
+		r.fail(err)
+		return
+	}
+	if r.h.Status == "" && r.t >= r.h.Scenario.Run.Span {
 		r.h.Events = append(r.h.Events, Event{runID: r.h.RunID, Time: r.t, Name: EventSpanEnded, Ends: true})
 		r.stop(StatusComplete, "")
 	}
@@ -218,10 +235,14 @@ func (r *run) happened(seg *ode.Segment) ending {
 	occurred := r.occurred(seg)
 	for i := range occurred {
 		o := &occurred[i]
+		if o.wide != "" {
+			return ending{at: o.T, y: o.Y, wide: o.wide}
+		}
 		e := r.event(o)
 		r.h.Events = append(r.h.Events, e)
 		fired := r.triggered(&e)
-		if !e.Ends && fired < 0 {
+		wide := r.resolves(o)
+		if !e.Ends && fired < 0 && !wide {
 			continue
 		}
 		stop := ending{at: o.T, y: o.Y, ends: e.Ends}
@@ -230,6 +251,9 @@ func (r *run) happened(seg *ode.Segment) ending {
 		}
 		if fired >= 0 {
 			stop.fired = []int{fired}
+		}
+		if wide {
+			stop.wide = e.Name + " in " + e.Detail
 		}
 		for _, p := range occurred {
 			if p.T == o.T && p.news == nil && !p.passage {

@@ -95,7 +95,7 @@ func newSampler(p *System, carried *carrier, runID string) *sampler {
 		}
 	}
 	s.system.runID = runID
-	s.system.regime = p.scenario.Run.Regime
+	s.system.regime = carried.regime()
 	return s
 }
 

@@ -60,7 +60,7 @@ func (r *reader) structure(s *Scenario) {
 			}
 		}
 	}
-	if s.Run.Regime == Adiabatic {
+	if s.Run.Regime != Resolved {
 		for _, c := range s.Chains {
 			if c.Free {
 				r.report(path{"chain", c.Name, "state"}, "is free, and the adiabatic regime follows no angle that may circulate", `write regime = "resolved", or state = "locked" with an offset`)

@@ -14,10 +14,12 @@ const (
 	EventFoldNear            = "fold-near"            // the locked state is about to cease to exist
 	EventLibrationsCross     = "librations-cross"     // two modes have shared their actions
 	EventCentreUnstable      = "centre-unstable"      // a fast eigenvalue is real
+
+	EventRegimeChanged = "regime-changed" // an auto history follows librations from here on, or carries them again
 )
 
 // eventNames are the names a trigger may give.
 var eventNames = append([]string{
 	EventRocheLimit, EventOrbitsCross, EventResonanceLeft, EventResonanceEntered, EventEccentricityLimit,
-	EventLibrationOverstable, EventFoldNear, EventLibrationsCross, EventCentreUnstable,
+	EventLibrationOverstable, EventFoldNear, EventLibrationsCross, EventCentreUnstable, EventRegimeChanged,
 }, thermal.EventNames()...)

@@ -122,10 +122,8 @@ var problemCases = []struct{ name, old, new, want string }{
   hint: write convection = { law = "stagnant-lid", … }`},
 	{"solidus above liquidus", `solidus = "1600 K"`, `solidus = "2600 K"`, `base.toml:22: orbiter.Cinder.interior.solidus: solidus 2600 K is not below the liquidus 2000 K
   hint: give the temperature at which melting begins, then the one at which it is complete`},
-	{"regime of a later version", `span = "100 Myr"`, "span = \"100 Myr\"\nregime = \"auto\"", `base.toml:4: run.regime: "auto" is not available in this version
-  hint: write regime = "adiabatic" or regime = "resolved"`},
 	{"unknown regime", `span = "100 Myr"`, "span = \"100 Myr\"\nregime = \"fast\"", `base.toml:4: run.regime: "fast" is not one of its choices
-  hint: choose one of adiabatic, resolved`},
+  hint: choose one of adiabatic, resolved, auto`},
 	{"method without resolving", `span = "100 Myr"`, "span = \"100 Myr\"\nmethod = \"dop853\"", `base.toml:4: run.method: "dop853" is no integrator of the adiabatic regime
   hint: remove it, or write radau or rosenbrock`},
 	{"tolerance", `span = "100 Myr"`, "span = \"100 Myr\"\ntolerance = 0.1", `base.toml:4: run.tolerance: 0.1 is out of range

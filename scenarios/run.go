@@ -15,8 +15,8 @@ var runKeys = []key.Key{
 		Meaning: "length of the history"},
 	{Name: "start", Kind: key.Quantity, Unit: "Myr", Default: 0.0, Range: key.Between(0, longest), Fixed: true,
 		Meaning: "age of the system when the history begins, for laws that depend on it; none of this version does"},
-	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic", "resolved"}, Default: "adiabatic", Fixed: true,
-		Meaning: "how librations are treated: adiabatic steps over them, for gigayears; resolved follows each at some ten steps a year, for 1e4 to 1e8 years"},
+	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic", "resolved", "auto"}, Default: "adiabatic", Fixed: true,
+		Meaning: "how librations are treated: adiabatic steps over them, for gigayears; resolved follows each at some ten steps a year, for 1e4 to 1e8 years; auto is adiabatic, and resolved from where a libration grows beyond 10 deg or a fold is near until all are within 3 deg"},
 	{Name: "method", Kind: key.Choice, Choices: []string{"radau", "rosenbrock", "splitting", "dop853"}, Optional: true, Fixed: true,
 		Meaning: "integrator. Adiabatic: radau, the default, at any tolerance; rosenbrock, cheaper at 1e-3 and for many runs of moderate accuracy. Resolved: splitting, the exact linear flow about the libration centre and small remainders, the default where every chain starts locked; dop853, for everything, the default elsewhere"},
 	{Name: "tolerance", Kind: key.Number, Default: 1e-7, Range: key.Between(1e-12, 1e-3), Fixed: true,
@@ -28,7 +28,7 @@ var runKeys = []key.Key{
 	{Name: "judge", Kind: key.Text, Optional: true, Fixed: true,
 		Meaning: "orbiter whose outcome is the run's; without it the innermost with a thermal state"},
 	{Name: "max_steps", Kind: key.Integer, Optional: true, Range: key.AtLeast(1), Fixed: true,
-		Meaning: "steps after which the run ends unfinished; without it 1e6, in the resolved regime 1e9"},
+		Meaning: "steps after which the run ends unfinished; without it 1e6, in the regimes resolved and auto 1e9"},
 	{Name: "stop", Kind: key.Special, Optional: true, Fixed: true,
 		Meaning: `events that end the run, a list: [{ event = "NAME", body = "NAME", other = "NAME" }], bodies optional`},
 }
@@ -37,6 +37,7 @@ var runKeys = []key.Key{
 const (
 	Adiabatic = "adiabatic"
 	Resolved  = "resolved"
+	Auto      = "auto"
 )
 
 // Methods of the adiabatic and of the resolved regime.
@@ -47,9 +48,6 @@ const (
 	DOP853     = "dop853"
 )
 
-// laterRegimes are refused as unavailable, not as unknown.
-var laterRegimes = []string{"auto"}
-
 var triggerKeys = []key.Key{
 	{Name: "event", Kind: key.Choice, Choices: eventNames, Fixed: true, Meaning: "name of the event"},
 	{Name: "body", Kind: key.Text, Default: "", Fixed: true, Meaning: "orbiter it must concern, any if empty"},
@@ -58,11 +56,6 @@ var triggerKeys = []key.Key{
 
 func (r *reader) run(n *node, top *scope) Run {
 	at := path{"run"}
-	if regime := n.table["regime"]; regime != nil && regime.form == textForm && contains(laterRegimes, regime.text) {
-		r.report(at.with("regime"), quote(regime.text)+" is not available in this version", `write regime = "adiabatic" or regime = "resolved"`)
-		n = n.clone()
-		n.drop("regime")
-	}
 	v, _ := r.values(n, &scope{at: at, keys: runKeys, outer: top})
 	run := Run{}
 	run.Span, _ = v.Map["span"].(float64)
@@ -74,7 +67,7 @@ func (r *reader) run(n *node, top *scope) Run {
 	run.MaxSteps, _ = v.Map["max_steps"].(int64)
 	if run.MaxSteps == 0 && n.table["max_steps"] == nil {
 		run.MaxSteps = 1e6
-		if run.Regime == Resolved {
+		if run.Regime != Adiabatic {
 			run.MaxSteps = 1e9
 		}
 	}

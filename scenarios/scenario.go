@@ -21,7 +21,7 @@ type Scenario struct {
 type Run struct {
 	Span      float64 // s
 	Start     float64 // age at t = 0, s
-	Regime    string  // Adiabatic or Resolved
+	Regime    string  // Adiabatic, Resolved or Auto
 	Method    string  // Splitting or DOP853, "" for the choice by the chains; "" in the adiabatic regime
 	Tolerance float64 // relative, per step
 	Record    Record
