@@ -106,3 +106,45 @@ func TestCadenceIsExact(t *testing.T) {
 		}
 	}
 }
+
+// A line does not lead from 359° to 1° by way of 180°, nor over a value that is
+// null at one end.
+func TestLinesNeverCrossATurnOrAGap(t *testing.T) {
+	r := &recorder{turning: []bool{true, false}, peak: []float64{360, 1}}
+	nan := math.NaN()
+	at := func(t, angle, other float64) *candidate { return &candidate{t: t, values: []float64{angle, other}} }
+	for _, c := range []struct {
+		name    string
+		a, b, m *candidate
+		want    bool
+	}{
+		{"straight", at(0, 10, 1), at(2, 12, 1), at(1, 11, 1), true},
+		{"over a turn", at(0, 359, 1), at(2, 1, 1), at(1, 180, 1), false},
+		{"into a null", at(0, 10, 1), at(2, 12, nan), at(1, 11, 1), false},
+		{"all null", at(0, 10, nan), at(2, 12, nan), at(1, 11, nan), true},
+		{"off by more", at(0, 10, 1), at(2, 12, 1), at(1, 11, 1.02), false},
+		{"off by less", at(0, 10, 1), at(2, 12, 1), at(1, 11, 1.009), true},
+	} {
+		if got := r.straight(c.a, c.b, c.m, 0.01); got != c.want {
+			t.Errorf("%s: %v, want %v", c.name, got, c.want)
+		}
+	}
+}
+
+// Extremes between the ends of steps are seen: the hottest the mantle gets, as a
+// recording far denser than the steps has it, to what a quarter of a step of such
+// a peak leaves.
+func TestExtremesBetweenSteps(t *testing.T) {
+	h := run1(t, shipped(t, "volcanic-cycle", set("run.span", "20 Myr"), set("run.record", "0.002 Myr")))
+	T, _, err := bodiesOf(t, h).Floats("temperature_K")
+	if err != nil {
+		t.Fatal(err)
+	}
+	most := 0.0
+	for _, v := range T {
+		most = math.Max(most, v)
+	}
+	if d := most - h.Bodies[0].Temperature.Max; d > 0.1 || d < -0.1 {
+		t.Errorf("hottest %g K in the outcome, %g K in dense rows", h.Bodies[0].Temperature.Max, most)
+	}
+}

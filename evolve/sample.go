@@ -53,15 +53,15 @@ type resonanceSample struct {
 // systemSample is the ledger at one time, SI.
 type systemSample struct {
 	moment
-	regime                    string
-	orbital, internal         float64
-	heat, loss, radiogenic    float64
-	work, impulse, imposed    float64
-	momentum                  float64
-	closure                   closure
-	step                      float64 // s; NaN at the start
-	hasTorque, hasInterior    bool
-	hasThermalState, hasDecay bool
+	regime                 string
+	orbital, internal      float64
+	heat, loss, radiogenic float64
+	work, impulse, imposed float64
+	momentum               float64
+	closure                closure
+	step                   float64 // s; NaN at the start
+	hasTorque, hasInterior bool
+	hasThermalState        bool
 }
 
 // sampler turns states into samples.

@@ -24,7 +24,6 @@ import "math"
 // Every later rate is that plus a deviation computed without cancellation. A
 // Chain is immutable.
 type Chain struct {
-	primary Primary
 	members []member
 	pairs   []pair
 	offset  []float64 // dψ_r/dt at the reference, rad/s

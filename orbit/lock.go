@@ -148,7 +148,7 @@ func nonzero(x float64) float64 {
 
 func newChain(p Primary, n int) *Chain {
 	return &Chain{
-		primary: p, members: make([]member, n), pairs: make([]pair, n-1),
+		members: make([]member, n), pairs: make([]pair, n-1),
 		offset: make([]float64, n-1), rateRef: make([]float64, n),
 	}
 }

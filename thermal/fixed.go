@@ -53,7 +53,6 @@ func (fixed) Balance(float64) Balance                    { return Balance{} }
 func (fixed) Freeze(float64, []float64)                  {}
 func (fixed) Kinks() int                                 { return 0 }
 func (fixed) Kink(_ int, _ float64, _ []float64) float64 { return 1 }
-func (fixed) KinkName(int) string                        { return "" }
 func (fixed) Cross(int, bool)                            {}
 func (fixed) Snapshot() Snapshot                         { return Snapshot{} }
 func (fixed) Events() []EventFunc                        { return nil }

@@ -51,7 +51,6 @@ type Interior interface {
 	// the frozen pieces on its upper or lower side, whatever the state.
 	Kinks() int
 	Kink(i int, t float64, x []float64) float64
-	KinkName(i int) string
 	Cross(i int, up bool)
 
 	// Snapshot returns the present state for output.
@@ -90,7 +89,6 @@ type Snapshot struct {
 	MeltFraction Value // 0 to 1
 	Viscosity    Value // Pa s
 	Rigidity     Value // Pa
-	HeatFlux     Value // W/m², through the surface, all ways together
 }
 
 // EventFunc is an event: it happens where Value changes sign.

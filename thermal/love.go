@@ -30,3 +30,20 @@ func (s sphere) response(j complex128) (k float64, slope complex128) {
 func turn(slope, dj complex128) float64 {
 	return -(real(slope)*imag(dj) + imag(slope)*real(dj))
 }
+
+// HomogeneousLove returns the Love numbers k, h and l of a homogeneous,
+// incompressible, self-gravitating sphere at a degree n ≥ 2 (Love 1911; Munk &
+// MacDonald 1960), for a complex rigidity mu, Pa, a density, kg/m³, the surface
+// gravity, m/s², and the radius, m:
+//
+//	k = 3/(2(n−1)) / (1 + μ̃),  h = (2n+1)/3 · k,  l = k/n
+//
+// with the effective rigidity μ̃ = (2n²+4n+3)/n · μ/(ρgR).
+func HomogeneousLove(degree int, mu complex128, density, gravity, radius float64) (k, h, l complex128) {
+	n := float64(degree)
+	stiff := complex((2*n*n+4*n+3)/n/(density*gravity*radius), 0) * mu
+	k = complex(1.5/(n-1), 0) / (1 + stiff)
+	h = complex((2*n+1)/3, 0) * k
+	l = k / complex(n, 0)
+	return k, h, l
+}

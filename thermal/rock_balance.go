@@ -30,6 +30,5 @@ func (r *rock) Snapshot() Snapshot {
 		MeltFraction: Value{min(max(s.f, 0), 1), true},
 		Viscosity:    Value{s.eta, true},
 		Rigidity:     Value{s.mu, true},
-		HeatFlux:     Value{s.q + s.qm, true},
 	}
 }

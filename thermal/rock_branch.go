@@ -20,11 +20,6 @@ func (r *rock) Freeze(_ float64, x []float64) {
 // Kinks implements [Interior].
 func (r *rock) Kinks() int { return rockKinks }
 
-// KinkName implements [Interior].
-func (r *rock) KinkName(i int) string {
-	return [rockKinks]string{"solidus", "liquidus", "conduction"}[i]
-}
-
 // Kink implements [Interior]: the enthalpy above the solidus or the liquidus
 // over that of the solidus, or the difference of convective and conductive flux
 // over their sum, on the frozen phase. Exactly on a kink it has the sign of the
