@@ -5,7 +5,6 @@ import (
 	"math"
 	"testing"
 
-	"tidekiln/evolve/record"
 	"tidekiln/orbit"
 	"tidekiln/scenarios"
 )
@@ -127,18 +126,7 @@ func TestContinuingResolved(t *testing.T) {
 	}
 	whole := run1(t, shipped(t, "resolved-chain", edit("2 kyr")...))
 	half := run1(t, shipped(t, "resolved-chain", edit("1 kyr")...))
-	dir := t.TempDir() + "/half"
-	w, err := record.Create(dir, Tables(), record.CreateOptions{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := half.Write(w); err != nil {
-		t.Fatal(err)
-	}
-	from, err := Load(dir)
-	if err != nil {
-		t.Fatal(err)
-	}
+	from := continuation(t, half)
 	s, err := scenarios.Read("stored", []byte(from.Scenario), edit("2 kyr")...)
 	if err != nil {
 		t.Fatal(err)

@@ -6,7 +6,6 @@ import (
 	"fmt"
 	"testing"
 
-	"tidekiln/evolve/record"
 	"tidekiln/scenarios"
 )
 
@@ -14,18 +13,7 @@ func TestContinuing(t *testing.T) {
 	change := scenarios.Edit{Path: "change", Value: `[{ at = "100 Myr", set = { central.tide.k2_over_Q = 2e-5 } }]`}
 	whole := run1(t, shipped(t, "volcanic-cycle", set("run.span", "400 Myr"), change))
 	half := run1(t, shipped(t, "volcanic-cycle", set("run.span", "200 Myr"), change))
-	dir := t.TempDir() + "/half"
-	w, err := record.Create(dir, Tables(), record.CreateOptions{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := half.Write(w); err != nil {
-		t.Fatal(err)
-	}
-	from, err := Load(dir)
-	if err != nil {
-		t.Fatal(err)
-	}
+	from := continuation(t, half)
 	s, err := scenarios.Read("stored", []byte(from.Scenario), set("run.span", "400 Myr"))
 	if err != nil {
 		t.Fatal(err)

@@ -169,18 +169,7 @@ func TestContinuingLibrations(t *testing.T) {
 	name := "red-dwarf-planets"
 	whole := run1(t, shipped(t, name, set("run.span", "400 Myr")))
 	half := run1(t, shipped(t, name, set("run.span", "200 Myr")))
-	dir := t.TempDir() + "/half"
-	w, err := record.Create(dir, Tables(), record.CreateOptions{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := half.Write(w); err != nil {
-		t.Fatal(err)
-	}
-	from, err := Load(dir)
-	if err != nil {
-		t.Fatal(err)
-	}
+	from := continuation(t, half)
 	rest, err := Run(context.Background(), shipped(t, name, set("run.span", "400 Myr")), Options{From: from})
 	if err != nil {
 		t.Fatal(err)

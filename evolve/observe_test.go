@@ -35,18 +35,7 @@ func TestMisfit(t *testing.T) {
 	// Met before the end, they count in a history that is continued.
 	first := shipped(t, "volcanic-cycle", set("run.span", "30 Myr"))
 	first.Observed = list
-	dir := t.TempDir() + "/first"
-	w, err := record.Create(dir, Tables(), record.CreateOptions{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := run1(t, first).Write(w); err != nil {
-		t.Fatal(err)
-	}
-	from, err := Load(dir)
-	if err != nil {
-		t.Fatal(err)
-	}
+	from := continuation(t, run1(t, first))
 	rest, err := Run(context.Background(), s, Options{From: from})
 	if err != nil {
 		t.Fatal(err)

@@ -36,8 +36,8 @@ func near(t *testing.T, what string, got, want, rel float64) {
 	}
 }
 
-// stored writes a history and opens it again.
-func written(t testing.TB, h *History) *record.Dataset {
+// save writes a history and returns the place.
+func save(t testing.TB, h *History) string {
 	t.Helper()
 	dir := filepath.Join(t.TempDir(), "out")
 	w, err := record.Create(dir, Tables(), record.CreateOptions{})
@@ -47,11 +47,27 @@ func written(t testing.TB, h *History) *record.Dataset {
 	if err := h.Write(w); err != nil {
 		t.Fatal(err)
 	}
-	d, err := record.Open(dir)
+	return dir
+}
+
+// written writes a history and opens it again.
+func written(t testing.TB, h *History) *record.Dataset {
+	t.Helper()
+	d, err := record.Open(save(t, h))
 	if err != nil {
 		t.Fatal(err)
 	}
 	return d
+}
+
+// continuation writes a history and loads its end.
+func continuation(t testing.TB, h *History) *Continuation {
+	t.Helper()
+	c, err := Load(save(t, h))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return c
 }
 
 // value returns a column of bodies at a time, Myr.
