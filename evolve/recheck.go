@@ -2,10 +2,11 @@ package evolve
 
 import (
 	"context"
-	"errors"
+	"fmt"
 	"math"
 
 	"tidekiln/evolve/record"
+	"tidekiln/scenarios"
 )
 
 // Recheck is the same history at a smaller tolerance beside the first.
@@ -27,26 +28,54 @@ type Difference struct {
 	Value, Rechecked       float64 // in the column's unit
 }
 
-// recheckFactor is how much smaller the tolerance of the second history is, and
-// leastTolerance the smallest it can be.
+// recheckFactor is how much smaller the tolerance of the second history is,
+// leastTolerance the smallest it can be, and moreSteps how many times as many
+// steps it may take.
 const (
 	recheckFactor  = 0.01
 	leastTolerance = 1e-12
+	moreSteps      = 100
 )
+
+// CanRepeat says whether a history of the scenario can be held against one at a
+// smaller tolerance.
+func CanRepeat(s *scenarios.Scenario) error {
+	if s.Run.Tolerance <= leastTolerance {
+		return fmt.Errorf("run.tolerance is %g, as small as it can be: there is nothing to recheck it against", s.Run.Tolerance)
+	}
+	return nil
+}
+
+// withoutJumps leaves out the two rows at each change of the rules: the second
+// history writes its own there, and if the change waited for an event, a hair's
+// breadth aside.
+func withoutJumps(times []float64) []float64 {
+	out := []float64{}
+	for i := 0; i < len(times); i++ {
+		if i+1 < len(times) && times[i+1] == math.Nextafter(times[i], math.Inf(1)) {
+			i++
+			continue
+		}
+		out = append(out, times[i])
+	}
+	return out
+}
 
 // Repeat runs a history again at a hundredth of its tolerance, with rows at the
 // same times, and notes the differences in it: what a referee asks first. A
 // second history that is interrupted leaves the first as it was.
 func (h *History) Repeat(ctx context.Context, o Options) error {
-	s := *h.Scenario
-	s.Run.Tolerance = math.Max(leastTolerance, recheckFactor*s.Run.Tolerance)
-	if s.Run.Tolerance >= h.Scenario.Run.Tolerance {
-		return errors.New("run.tolerance is as small as it can be: there is nothing to recheck it against")
-	}
-	var err error
-	if o.times, _, err = h.rows["system"].Frame().Floats("time_Myr"); err != nil {
+	if err := CanRepeat(h.Scenario); err != nil {
 		return err
 	}
+	s := *h.Scenario
+	s.Run.Tolerance = math.Max(leastTolerance, recheckFactor*s.Run.Tolerance)
+	s.Run.MaxSteps *= moreSteps
+	times, _, err := h.rows["system"].Frame().Floats("time_Myr")
+	if err != nil {
+		return err
+	}
+	o.times = withoutJumps(times)
 	again, err := Run(ctx, &s, o)
 	if err != nil {
 		return err

@@ -55,6 +55,23 @@ func TestRecheck(t *testing.T) {
 	}
 }
 
+// A jump that waits for an event comes a hair's breadth aside in the second
+// history: rows about it are no difference.
+func TestRecheckOverAJump(t *testing.T) {
+	h := run1(t, shipped(t, "lone-moon", set("run.max_steps", "200"),
+		set("change", `[{ when = { event = "solidus-crossed" }, set = { orbiter.Ember.interior.temperature = "1640 K" } }]`)))
+	if err := h.Repeat(context.Background(), Options{}); err != nil {
+		t.Fatal(err)
+	}
+	if h.Status != StatusComplete || h.Recheck.Status != StatusComplete {
+		t.Fatalf("%s (%s), rechecked %s", h.Status, h.Reason, h.Recheck.Status)
+	}
+	// After the jump the mantle cools by some 1 K/Myr; the event moves by 1e-7 Myr.
+	if d, ok := h.Recheck.Worst("temperature_K"); !ok || d.Relative > 1e-5 {
+		t.Errorf("temperature differs by %.1e at %g Myr", d.Relative, d.Time)
+	}
+}
+
 func TestRecheckThatCannotBe(t *testing.T) {
 	h := run1(t, shipped(t, "quiet-chain", set("run.tolerance", "1e-12")))
 	if err := h.Repeat(context.Background(), Options{}); err == nil || h.Recheck != nil {

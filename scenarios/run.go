@@ -71,7 +71,9 @@ func (r *reader) run(n *node, top *scope) Run {
 			run.MaxSteps = 1e9
 		}
 	}
-	run.Method, _ = v.Map["method"].(string)
+	if run.Method, _ = v.Map["method"].(string); run.Method == Radau && run.Regime == Adiabatic {
+		run.Method = "" // the default, and the same case
+	}
 	if stepsOver := run.Method == Radau || run.Method == Rosenbrock; run.Method != "" && stepsOver != (run.Regime == Adiabatic) {
 		other := map[bool]string{true: "splitting or dop853", false: "radau or rosenbrock"}[stepsOver]
 		r.report(at.with("method"), quote(run.Method)+" is no integrator of the "+run.Regime+" regime", "remove it, or write "+other)

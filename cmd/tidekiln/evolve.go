@@ -87,6 +87,11 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 	if _, err := evolve.Check(s); err != nil {
 		return request(err)
 	}
+	if e.recheck {
+		if err := evolve.CanRepeat(s); err != nil {
+			return request(err)
+		}
+	}
 	if err := e.checkPicturePlace(); err != nil {
 		return request(err)
 	}
@@ -109,13 +114,15 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 		return request(err)
 	}
 	h.Attempt.Wall = time.Since(begun)
-	if e.recheck && h.Status != evolve.StatusInterrupted {
+	var unchecked error
+	if e.recheck && h.Status != evolve.StatusInterrupted && h.Status != evolve.StatusFailed {
 		again := newProgress(os.Stderr, e.quiet)
 		err := h.Repeat(ctx, evolve.Options{From: from, Progress: again.show})
 		again.done()
 		if err != nil {
 			fmt.Fprintf(os.Stderr, "tidekiln: the history is kept, the recheck is not: %v\n", err)
 		}
+		unchecked = err
 	}
 	if err := h.Write(w); err != nil {
 		return &exit{exitStopped, err}
@@ -124,7 +131,18 @@ func (e *evolution) run(ctx context.Context, args []string) error {
 	if !e.quiet {
 		summarise(e.stdout, h, e.out, drawn)
 	}
+	if unchecked != nil {
+		return &exit{interruption(ctx), nil}
+	}
 	return ending(ctx, h, e.out)
+}
+
+// interruption is the exit code of what a signal stopped.
+func interruption(ctx context.Context) int {
+	if errors.Is(context.Cause(ctx), errCtrlC) {
+		return exitCtrlC
+	}
+	return exitInterrupted
 }
 
 // ending is how the command ends after a history was written.
@@ -133,11 +151,7 @@ func ending(ctx context.Context, h *evolve.History, out string) error {
 	case evolve.StatusFailed:
 		return &exit{exitStopped, fmt.Errorf("%s: %s; the history up to there is in %s", h.Status, h.Reason, out)}
 	case evolve.StatusInterrupted:
-		code := exitInterrupted
-		if errors.Is(context.Cause(ctx), errCtrlC) {
-			code = exitCtrlC
-		}
-		return &exit{code, fmt.Errorf("%s at %.6g Myr; the history up to there is in %s: go on with\n  tidekiln evolve --from %s", h.Reason, h.End/evolve.Megayear, out, out)}
+		return &exit{interruption(ctx), fmt.Errorf("%s at %.6g Myr; the history up to there is in %s: go on with\n  tidekiln evolve --from %s", h.Reason, h.End/evolve.Megayear, out, out)}
 	}
 	return nil
 }
