@@ -94,7 +94,7 @@ func (r *recorder) step(seg *ode.Segment, end, last float64, sums []float64) {
 			break
 		}
 		r.between(seg, from, t, sums, false)
-		r.offer(r.at(seg, t, r.grid.time(), sums), true)
+		r.offer(r.at(seg, t, r.grid.time(), r.grid.every != nil, sums), true)
 		if r.grid.every != nil {
 			r.grid.next++
 		}
@@ -124,11 +124,11 @@ func (r *recorder) between(seg *ode.Segment, a, b float64, sums []float64, close
 	if r.change <= 0 || !(b > a) {
 		return
 	}
-	left := r.at(seg, a, a/Megayear, sums)
+	left := r.at(seg, a, a/Megayear, false, sums)
 	parts := math.Ceil(subdivisions * (b - a) / (seg.T1 - seg.T0))
 	for i := 1.0; i <= parts; i++ {
 		t := a + (b-a)*i/parts
-		right := r.at(seg, t, t/Megayear, sums)
+		right := r.at(seg, t, t/Megayear, false, sums)
 		r.halve(seg, left, right, sums, finest)
 		if i < parts || closed {
 			r.offer(right, false)
@@ -142,11 +142,11 @@ func (r *recorder) halve(seg *ode.Segment, a, b candidate, sums []float64, depth
 	if depth == 0 || !(t > a.t && t < b.t) {
 		return
 	}
-	m := r.at(seg, t*Megayear, t, sums)
+	m := r.at(seg, t*Megayear, t, false, sums)
 	if r.straight(&a, &b, &m, lookedAt*r.change) {
 		// An error that is odd about the middle shows only beside it.
 		u := 0.75*a.t + 0.25*b.t
-		q := r.at(seg, u*Megayear, u, sums)
+		q := r.at(seg, u*Megayear, u, false, sums)
 		if r.straight(&a, &b, &q, lookedAt*r.change) {
 			return
 		}
@@ -157,13 +157,13 @@ func (r *recorder) halve(seg *ode.Segment, a, b candidate, sums []float64, depth
 }
 
 // at samples the step at t.
-func (r *recorder) at(seg *ode.Segment, t, myr float64, sums []float64) candidate {
+func (r *recorder) at(seg *ode.Segment, t, myr float64, onGrid bool, sums []float64) candidate {
 	seg.Eval(t, r.y)
 	seg.QuadraturesTo(t, r.q)
 	for i, s := range sums {
 		r.q[i] += s
 	}
-	r.sampler.take(t, r.y, r.books, r.q, myr, r.grid.on(myr))
+	r.sampler.take(t, r.y, r.books, r.q, myr, onGrid)
 	return r.snapshot()
 }
 
@@ -175,6 +175,7 @@ func (r *recorder) snapshot() candidate {
 	if r.change <= 0 {
 		return c
 	}
+	c.values = make([]float64, 0, len(r.turning))
 	c.bodies, c.resonances, c.librations = slices.Clone(s.bodies), slices.Clone(s.resonances), slices.Clone(s.librations)
 	for i := range c.bodies {
 		c.values = bodiesTable.smooth(c.values, &c.bodies[i])
