@@ -179,6 +179,7 @@ var runsTable = newTable("runs", "one row a history", []string{"run_id"},
 	list("end_state", "", "state of the integration at the end, SI, to continue from", "", func(s *runRow) []float64 { return s.endState }),
 	list("end_ledger", "", "quadratures at the end, SI, to continue from", "", func(s *runRow) []float64 { return s.endLedger }),
 	list("end_librations", "", "librations at the end, SI, to continue from: of each chain the first least squared frequency and two marks, of each mode frequency, half the logarithm of the action and a mark", "", func(s *runRow) []float64 { return s.endLibrations }),
+	list("end_still", "", "of an auto history that follows its librations: the state about which they were at the last look, to continue from; else empty", "", func(s *runRow) []float64 { return s.endStill }),
 	list("end_observed", "", "observations met so far, to continue from: their places in the scenario and the values of the model, in pairs", "", func(s *runRow) []float64 { return s.endObserved }),
 	list("end_changes", "", "places in the scenario of the changes already made, in their order", "", func(s *runRow) []float64 { return s.endChanges }),
 )

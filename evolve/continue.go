@@ -16,11 +16,12 @@ type Continuation struct {
 	Scenario string  // TOML, resolved
 	Time     float64 // s
 
-	regime                      string
-	state, librations, observed []float64
-	ledger                      *ledger
-	changes                     []int
-	passed                      []Event // at the end
+	regime                   string
+	state, librations, still []float64
+	observed                 []float64
+	ledger                   *ledger
+	changes                  []int
+	passed                   []Event // at the end
 }
 
 // Load reads the end of the history in a dataset. It must come from the same
@@ -35,11 +36,12 @@ func Load(dir string) (*Continuation, error) {
 	}
 	c := &Continuation{RunID: s.RunID, Scenario: s.Scenario, Time: s.End}
 	var books, changes []float64
-	errs := make([]error, 8)
+	errs := make([]error, 9)
 	c.regime, errs[0] = first(f.Texts("end_regime"))
 	c.state, errs[1] = first(f.Lists("end_state"))
 	c.librations, errs[2] = first(f.Lists("end_librations"))
 	c.observed, errs[3] = first(f.Lists("end_observed"))
+	c.still, errs[8] = first(f.Lists("end_still"))
 	changes, errs[4] = first(f.Lists("end_changes"))
 	if books, errs[5] = first(f.Lists("end_ledger")); errs[5] == nil {
 		c.ledger, errs[6] = unpackLedger(books)
@@ -122,7 +124,7 @@ func (r *run) resumeLibrations(c *Continuation) error {
 	before := c.regime == scenarios.Resolved
 	switch {
 	case before && r.auto():
-		return r.resumeFollowing(c.librations)
+		return r.resumeFollowing(c)
 	case before && !r.resolved:
 		return errors.New("the dataset holds a history of the resolved regime, whose librations the adiabatic one would lose: continue it with run.regime = \"resolved\" or \"auto\"")
 	case before:
@@ -152,20 +154,24 @@ func (r *run) resumeLibrations(c *Continuation) error {
 
 // resumeFollowing goes on following librations in an auto history; of those
 // stored, if any, the carrier put aside keeps where the fold is judged from.
-func (r *run) resumeFollowing(stored []float64) error {
+func (r *run) resumeFollowing(c *Continuation) error {
+	stored := c.librations
 	if len(stored) == 0 {
 		stored = nil
 	}
-	still := append([]float64(nil), r.y...)
-	r.p.principal(still)
-	if err := r.p.still(r.t, still); err != nil {
-		return fmt.Errorf("the dataset ends far from any lock: %w; continue it with run.regime = %q", err, scenarios.Resolved)
+	still := append([]float64(nil), c.still...)
+	if len(still) != len(r.y) {
+		// Of a history that was resolved throughout: as near as a projection comes.
+		still = append(still[:0], r.y...)
+		if err := r.p.still(r.t, still); err != nil {
+			return fmt.Errorf("the dataset ends far from any lock: %w; continue it with run.regime = %q", err, scenarios.Resolved)
+		}
 	}
 	l, err := newCarrier(r.p, r.t, still, stored)
 	if err != nil {
 		return err
 	}
-	r.gauge, r.carried, r.resolved = newGauge(l, r.t), noCarrier(r.p), true
+	r.gauge, r.carried, r.resolved = newGauge(l, r.t, still), noCarrier(r.p), true
 	return nil
 }
 

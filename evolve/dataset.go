@@ -31,6 +31,7 @@ type runRow struct {
 	endLibrations, endObserved     []float64
 	endChanges                     []float64
 	endRegime                      string
+	endStill                       []float64
 }
 
 // end is what a continued history takes up.
@@ -39,6 +40,7 @@ type end struct {
 	regime     string // Adiabatic or Resolved
 	ledger     *ledger
 	librations []float64
+	still      []float64 // about which an auto history librates that follows it
 	observed   []float64
 	changes    []int
 }
@@ -124,7 +126,7 @@ func (h *History) row() runRow {
 		RunID: h.RunID, ScenarioID: h.Scenario.ID(), ParentRunID: h.Parent, scenario: h.Scenario,
 		Status: h.Status, Reason: h.Reason, Judged: h.Judged, Outcome: h.Outcome, OrbitOutcome: h.OrbitOutcome,
 		Begin: h.Begin, End: h.End, Closure: closure{h.Closure.Energy, h.Closure.Momentum}, Suspect: h.Suspect, cautions: h.Cautions, recheck: h.Recheck, Misfit: h.Misfit,
-		Stats: h.Stats, endState: h.end.state, endRegime: h.end.regime, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
+		Stats: h.Stats, endState: h.end.state, endRegime: h.end.regime, endStill: h.end.still, endLedger: h.end.ledger.pack(), endLibrations: h.end.librations, endObserved: h.end.observed, endChanges: []float64{},
 	}
 	for _, i := range h.end.changes {
 		row.endChanges = append(row.endChanges, float64(i))

@@ -128,7 +128,7 @@ func (r *run) finish() {
 		bound = math.Max(resolvedClosureFactor*h.Scenario.Run.Tolerance, sampling)
 	}
 	h.Suspect = c.energy > bound || c.momentum > bound
-	h.end = end{state: r.y, ledger: r.ledger, changes: r.made, regime: r.carried.regime(), librations: r.packLibrations(), observed: r.met()}
+	h.end = end{state: r.y, ledger: r.ledger, changes: r.made, regime: r.carried.regime(), librations: r.packLibrations(), still: r.stillness(), observed: r.met()}
 	r.conclude()
 	h.Cautions = r.cautions()
 	h.rows["bodies"], h.rows["resonances"], h.rows["system"] = r.rec.bodies, r.rec.resonances, r.rec.system

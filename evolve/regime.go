@@ -51,10 +51,22 @@ func (l *carrier) tooWide() string {
 // packLibrations lists the librations at the end: those carried, or the last that
 // were before they were followed.
 func (r *run) packLibrations() []float64 {
-	if r.resolved && r.gauge != nil {
+	if r.followed() {
 		return r.gauge.aside.pack(r.t)
 	}
 	return r.carried.pack(r.t)
+}
+
+// followed reports whether an auto history follows librations at present.
+func (r *run) followed() bool { return r.resolved && r.gauge != nil }
+
+// stillness is the state about which they librate, as last placed; none if they
+// are not followed.
+func (r *run) stillness() []float64 {
+	if r.followed() {
+		return r.gauge.still
+	}
+	return []float64{}
 }
 
 // widened returns where in the last step librations became too wide, growing or
@@ -100,13 +112,12 @@ func (l *carrier) tooWideAt(chain int, t float64) string {
 	return ""
 }
 
-// follows makes y, on the slow manifold, a state that librates as is carried, with
-// the same conserved sums, and puts the carrier aside.
+// follows makes y, on the slow manifold, a state that librates as is carried, and
+// puts the carrier aside.
 func (r *run) follows(y []float64) {
 	before := append([]float64(nil), y...)
 	r.carried.displace(y, r.h.Scenario.Run.Seed)
-	r.p.restore(y, before)
-	r.gauge = newGauge(r.carried, r.t)
+	r.gauge = newGauge(r.carried, r.t, before)
 	r.carried = noCarrier(r.p)
 	r.resolved = true
 }
@@ -127,9 +138,6 @@ func (r *run) changeRegime(wide string) error {
 func (r *run) resolve(why string) error {
 	r.rowBefore()
 	orbital, internal, momentum := r.p.stores(r.t, r.y)
-	if err := r.p.still(r.t, r.y); err != nil {
-		return err
-	}
 	for i := range r.carried.chains {
 		r.carried.chains[i].toldLost = false // known up to here
 	}

@@ -25,6 +25,9 @@ func (p *System) method() string {
 	if m := p.scenario.Run.Method; m != "" {
 		return m
 	}
+	if p.scenario.Run.Regime == scenarios.Auto {
+		return scenarios.DOP853 // librations are followed from where they are wide
+	}
 	locked := false
 	for i := range p.groups {
 		if p.groups[i].free {

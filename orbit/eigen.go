@@ -30,12 +30,13 @@ type Librations struct {
 	Modes []Eigenmode
 	chain *Chain
 	lu    *shifted
+	steep float64 // greatest |Re λ|/Im λ
 }
 
 // NewLibrations makes room for the modes of the chain.
 func (c *Chain) NewLibrations() *Librations {
 	dim := c.Dim()
-	l := &Librations{chain: c, Modes: make([]Eigenmode, 2*len(c.members)-2), lu: newShifted(dim)}
+	l := &Librations{chain: c, Modes: make([]Eigenmode, 2*len(c.members)-2), lu: newShifted(dim), steep: steepest}
 	for i := range l.Modes {
 		l.Modes[i].Right, l.Modes[i].Left = make([]complex128, dim), make([]complex128, dim)
 	}
@@ -92,6 +93,14 @@ func (l *Librations) Find(jac []float64, stride int) error {
 	}
 	sort.SliceStable(l.Modes, func(a, b int) bool { return l.Modes[a].Frequency > l.Modes[b].Frequency })
 	return nil
+}
+
+// FindBeside is Find at a state that librates by degrees, where the real parts
+// mean nothing and are let pass up to half the frequency: for [Librations.Filter].
+func (l *Librations) FindBeside(jac []float64, stride int) error {
+	l.steep = 0.5
+	defer func() { l.steep = steepest }()
+	return l.Find(jac, stride)
 }
 
 // Track computes the modes at another state from those of from, each in its

@@ -38,7 +38,7 @@ func (l *Librations) refine(m *Eigenmode, jac []float64, stride int) bool {
 		}
 	}
 	m.Frequency, m.Growth = imag(value), real(value)
-	if !done || !(m.Frequency > 0) || !(math.Abs(m.Growth) <= steepest*m.Frequency) {
+	if !done || !(m.Frequency > 0) || !(math.Abs(m.Growth) <= l.steep*m.Frequency) {
 		return false
 	}
 	size := math.Abs(l.chain.action(v))

@@ -18,7 +18,7 @@ var runKeys = []key.Key{
 	{Name: "regime", Kind: key.Choice, Choices: []string{"adiabatic", "resolved", "auto"}, Default: "adiabatic", Fixed: true,
 		Meaning: "how librations are treated: adiabatic steps over them, for gigayears; resolved follows each at some ten steps a year, for 1e4 to 1e8 years; auto is adiabatic, and resolved from where a libration grows beyond 10 deg or a fold is near until all are within 3 deg"},
 	{Name: "method", Kind: key.Choice, Choices: []string{"radau", "rosenbrock", "splitting", "dop853"}, Optional: true, Fixed: true,
-		Meaning: "integrator. Adiabatic: radau, the default, at any tolerance; rosenbrock, cheaper at 1e-3 and for many runs of moderate accuracy. Resolved: splitting, the exact linear flow about the libration centre and small remainders, the default where every chain starts locked; dop853, for everything, the default elsewhere"},
+		Meaning: "integrator. Adiabatic: radau, the default, at any tolerance; rosenbrock, cheaper at 1e-3 and for many runs of moderate accuracy. Resolved: splitting, the exact linear flow about the libration centre and small remainders, the default where every chain starts locked; dop853, for everything, the default elsewhere and in the regime auto"},
 	{Name: "tolerance", Kind: key.Number, Default: 1e-7, Range: key.Between(1e-12, 1e-3), Fixed: true,
 		Meaning: "relative error allowed in a step"},
 	{Name: "record", Kind: key.Special, Optional: true, Fixed: true,
