@@ -4,8 +4,8 @@
 //
 // Most callers want [Run]. [NewSystem] gives the coupled right-hand side
 // itself, with its analytic Jacobian, for spectra and for other integrators;
-// [Survey] says what a scenario means before any integration; [Write] and
-// [Load] turn a history into a dataset and back.
+// [Survey] says what a scenario means before any integration; [History.Write]
+// turns a history into a dataset, and [Load] reads its end to go on from.
 //
 // Two regimes integrate the same equations. The adiabatic one steps far over the
 // librations of a resonance with an L-stable method and thereby keeps every chain
@@ -15,5 +15,7 @@
 // resolved one follows every libration, at some ten steps a year, of chains that
 // start locked or free, from elements: by a splitting into librations about their
 // centre and drift, or by DOP853 where angles circulate. It tells when resonances
-// are entered and left, by the arguments of the strongest members.
+// are entered and left, by the arguments of the strongest members. In the regime
+// auto a history is adiabatic until a carried libration is wide or a fold near, and
+// resolved from there until all are narrow again.
 package evolve
