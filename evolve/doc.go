@@ -15,5 +15,7 @@
 // resolved one follows every libration, at some ten steps a year, of chains that
 // start locked or free, from elements: by a splitting into librations about their
 // centre and drift, or by DOP853 where angles circulate. It tells when resonances
-// are entered and left, by the arguments of the strongest members.
+// are entered and left, by the arguments of the strongest members. An auto history
+// is adiabatic where librations are narrow and resolved where they are not, or where
+// a fold is near.
 package evolve
