@@ -20,6 +20,7 @@ import (
 type argument struct {
 	group        *group
 	pair, member int
+	angle        int     // place in the state of a resonance angle followed instead; 0: none
 	centre       float64 // sign of cos at the centre
 	inner, outer string
 
@@ -34,7 +35,8 @@ type argument struct {
 // sure is the number of librations, or turns, that count as more than chance.
 const sure = 10
 
-// arguments lists those of all chains; a locked start librates.
+// arguments lists those of all chains, and in an auto history, whose chains start
+// locked, their resonance angles; a locked start librates.
 func (p *System) arguments(y []float64) []argument {
 	var list []argument
 	for i := range p.groups {
@@ -48,12 +50,28 @@ func (p *System) arguments(y []float64) []argument {
 			a.re, a.im = a.at(y)
 			list = append(list, a)
 		}
+		if p.scenario.Run.Regime != scenarios.Auto {
+			continue
+		}
+		// Beyond a fold the arguments may librate while their difference circulates.
+		for r := 1; r+1 < len(g.body); r++ {
+			a := argument{
+				group: g, pair: r, angle: g.at + 3*g.Members() + r - 1, centre: 1, known: true, librates: true,
+				inner: p.bodies[g.body[r]].name, outer: p.bodies[g.body[r+1]].name,
+			}
+			a.re, a.im = a.at(y)
+			list = append(list, a)
+		}
 	}
 	return list
 }
 
-// at returns Re and Im of e e^{iθ} at the state y.
+// at returns Re and Im of e e^{iθ} at the state y, or cos and sin of an angle less
+// its centre.
 func (a *argument) at(y []float64) (re, im float64) {
+	if a.angle > 0 {
+		return math.Cos(y[a.angle]), math.Sin(y[a.angle])
+	}
 	return a.group.chain.Argument(a.pair, a.member, y[a.group.at:a.group.at+a.group.Dim()])
 }
 
